@@ -44,6 +44,15 @@ impl Halt {
         }
     }
 
+    /// The halt of the shared counter's present generation: fires at the next advance.
+    #[must_use]
+    pub fn current(&self) -> Halt {
+        Halt {
+            counter: Arc::clone(&self.counter),
+            mine: self.counter.load(Ordering::Relaxed),
+        }
+    }
+
     /// Whether the work must stop.
     pub fn fired(&self) -> bool {
         self.counter.load(Ordering::Relaxed) != self.mine
