@@ -1,1 +1,3 @@
-//! To come.
+//! The window: all of egui.
+
+pub mod theme;
