@@ -15,4 +15,5 @@ pub mod level;
 pub mod rules;
 pub mod search;
 pub mod study;
+pub mod verify;
 pub mod worker;

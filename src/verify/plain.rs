@@ -1,0 +1,547 @@
+//! The rules of the world, written a second time: slowly, plainly, and straight from the page.
+//!
+//! The step engine in `crate::rules` compiles a level into tables and packs positions into words. Here nothing is compiled
+//! and nothing is packed: each clause of rules.md is a few lines that can be read beside it. Two uses follow from that. The
+//! tests hold the engine against this interpreter on random levels, position for position; and the certificate checker
+//! trusts this interpreter alone, so that a mistake in the engine can't vouch for itself.
+//!
+//! Cost: a step clones the position and looks at every body for each cell that it asks about. That is fine for boards of a
+//! few dozen cells and for checking; nothing live should call it.
+
+use crate::level::{
+    BodyIx, BodyKind, Cell, Channel, Clause, Control, Dir, GroundIx, GroundKind, Item, ItemIx,
+    Level, Mechanics, Opens, Role, Size,
+};
+use std::collections::{BTreeMap, BTreeSet};
+
+/// A body on the board: its kind and its cells, in reading order.
+#[derive(Clone, Debug, PartialEq, Eq, PartialOrd, Ord, Hash)]
+pub struct Body {
+    /// What it is.
+    pub kind: BodyIx,
+    /// Where it stands; one cell under control Steer.
+    pub cells: Vec<Cell>,
+}
+
+/// A position of a level. Two positions are the same exactly if they are equal as values: the bodies are kept sorted, so
+/// that those of one kind and shape are interchangeable.
+#[derive(Clone, Debug, PartialEq, Eq, PartialOrd, Ord, Hash)]
+pub struct Position {
+    /// Ground of each cell, row by row.
+    pub ground: Vec<GroundIx>,
+    /// The bodies that are still on the board, sorted.
+    pub bodies: Vec<Body>,
+    /// Item on each cell, row by row.
+    pub items: Vec<Option<ItemIx>>,
+    /// Keys held; channels without a key are left out.
+    pub keys: BTreeMap<Channel, u32>,
+}
+
+/// What the player does.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Hash)]
+pub enum Act {
+    /// Steer all walkers.
+    Walk(Dir),
+    /// Drag the block that covers this cell.
+    Drag(Cell, Dir),
+}
+
+/// What a step did.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub struct Stepped {
+    /// The position after it.
+    pub position: Position,
+    /// Whether some cargo stands elsewhere than before, or has vanished.
+    pub pushed: bool,
+    /// Every cell that some body came onto, in passing or to stay.
+    pub touched: BTreeSet<Cell>,
+    /// Under control Drag: where the dragged block stands now, or nothing if it vanished.
+    pub dragged: Option<Vec<Cell>>,
+}
+
+/// A level with its kinds, ready to be played.
+#[derive(Clone, Debug)]
+pub struct World {
+    mechanics: Mechanics,
+    size: Size,
+    objective: Vec<Clause>,
+    start: Position,
+    shut: Option<Cell>,
+}
+
+impl World {
+    /// The world of a level.
+    pub fn new(mechanics: &Mechanics, level: &Level) -> World {
+        let mut bodies: Vec<Body> = level
+            .bodies_in_order()
+            .into_iter()
+            .map(|block| Body {
+                kind: block.kind,
+                cells: sorted(block.cells),
+            })
+            .collect();
+        bodies.sort();
+        World {
+            mechanics: mechanics.clone(),
+            size: level.size,
+            objective: level.objective(mechanics).to_vec(),
+            start: Position {
+                ground: level.ground.clone(),
+                bodies,
+                items: level.items.clone(),
+                keys: BTreeMap::new(),
+            },
+            shut: None,
+        }
+    }
+
+    /// The same world with one tile closed: nothing can enter it, nor can a warp bring a body there.
+    pub fn with_closed_tile(&self, tile: Cell) -> World {
+        World {
+            shut: Some(tile),
+            ..self.clone()
+        }
+    }
+
+    /// The position at the start.
+    pub fn start(&self) -> &Position {
+        &self.start
+    }
+
+    /// The size of the board.
+    pub fn size(&self) -> Size {
+        self.size
+    }
+
+    /// The kinds and pack-wide rules.
+    pub fn mechanics(&self) -> &Mechanics {
+        &self.mechanics
+    }
+
+    /// Everything that the player could try in a position, in a fixed order.
+    pub fn acts(&self, position: &Position) -> Vec<Act> {
+        match self.mechanics.control {
+            Control::Steer => Dir::ALL.map(Act::Walk).to_vec(),
+            Control::Drag => position
+                .bodies
+                .iter()
+                .flat_map(|body| Dir::ALL.map(|dir| Act::Drag(body.cells[0], dir)))
+                .collect(),
+        }
+    }
+
+    /// All steps that can be made from a position. What a finished position leads to is not left out.
+    pub fn steps(&self, position: &Position) -> Vec<(Act, Stepped)> {
+        self.acts(position)
+            .into_iter()
+            .filter_map(|act| Some((act, self.step(position, act)?)))
+            .collect()
+    }
+
+    /// Makes one step, or finds that it is none.
+    pub fn step(&self, from: &Position, act: Act) -> Option<Stepped> {
+        let mut turn = Turn::new(self, from);
+        let dragged = match act {
+            Act::Walk(dir) => {
+                turn.walk(dir);
+                None
+            }
+            Act::Drag(cell, dir) => Some(turn.drag(cell, dir)?),
+        };
+        let (position, touched, places) = turn.end();
+        (position != *from).then(|| Stepped {
+            pushed: self.cargo(&position) != self.cargo(from),
+            touched,
+            dragged: dragged.and_then(|body| places[body].clone()),
+            position,
+        })
+    }
+
+    /// Whether every clause of the objective holds.
+    pub fn finished(&self, position: &Position) -> bool {
+        self.objective
+            .iter()
+            .all(|clause| self.holds(position, clause))
+    }
+
+    fn holds(&self, position: &Position, clause: &Clause) -> bool {
+        match clause {
+            Clause::HomesFilled => self.size.cells().all(|cell| {
+                self.ground(position, cell).home.is_empty()
+                    || position.bodies.iter().any(|body| {
+                        body.cells.contains(&cell) && self.accepts(position, cell, body)
+                    })
+            }),
+            Clause::CargoHome(ids) => position
+                .bodies
+                .iter()
+                .filter(|body| ids.contains(&self.mechanics.body(body.kind).id))
+                .all(|body| {
+                    body.cells
+                        .iter()
+                        .all(|&cell| self.accepts(position, cell, body))
+                }),
+            Clause::WalkersOut => position
+                .bodies
+                .iter()
+                .filter(|body| self.mechanics.body(body.kind).role == Role::Walker)
+                .all(|body| {
+                    body.cells
+                        .iter()
+                        .all(|&cell| self.ground(position, cell).exit)
+                }),
+            Clause::GemsTaken => position
+                .items
+                .iter()
+                .flatten()
+                .all(|&item| self.mechanics.item(item).item != Item::Gem),
+        }
+    }
+
+    fn accepts(&self, position: &Position, cell: Cell, body: &Body) -> bool {
+        let id = &self.mechanics.body(body.kind).id;
+        self.ground(position, cell).home.contains(id)
+    }
+
+    fn ground(&self, position: &Position, cell: Cell) -> &GroundKind {
+        self.mechanics
+            .ground(position.ground[self.size.index(cell)])
+    }
+
+    fn cargo<'a>(&self, position: &'a Position) -> Vec<&'a Body> {
+        let is_cargo = |body: &&Body| self.mechanics.body(body.kind).role == Role::Cargo;
+        position.bodies.iter().filter(is_cargo).collect()
+    }
+}
+
+/// A step under way. Bodies are known by number, so that one that moves can be followed; one that vanished is `None`.
+struct Turn<'w> {
+    world: &'w World,
+    kinds: Vec<BodyIx>,
+    places: Vec<Option<Vec<Cell>>>,
+    ground: Vec<GroundIx>,
+    items: Vec<Option<ItemIx>>,
+    keys: BTreeMap<Channel, u32>,
+    /// The channels that were held before the step: gates are judged once.
+    held: BTreeSet<Channel>,
+    touched: BTreeSet<Cell>,
+}
+
+impl<'w> Turn<'w> {
+    fn new(world: &'w World, from: &Position) -> Turn<'w> {
+        let mut held = BTreeSet::new();
+        for body in &from.bodies {
+            if world.mechanics.body(body.kind).presses {
+                for &cell in &body.cells {
+                    held.extend(world.ground(from, cell).plate.clone());
+                }
+            }
+        }
+        Turn {
+            world,
+            kinds: from.bodies.iter().map(|body| body.kind).collect(),
+            places: from
+                .bodies
+                .iter()
+                .map(|body| Some(body.cells.clone()))
+                .collect(),
+            ground: from.ground.clone(),
+            items: from.items.clone(),
+            keys: from.keys.clone(),
+            held,
+            touched: BTreeSet::new(),
+        }
+    }
+
+    /// The position as it is now, the cells that bodies came onto, and where each body stands.
+    fn end(self) -> (Position, BTreeSet<Cell>, Vec<Option<Vec<Cell>>>) {
+        let mut bodies: Vec<Body> = self
+            .kinds
+            .iter()
+            .zip(&self.places)
+            .filter_map(|(&kind, cells)| {
+                let cells = cells.clone()?;
+                Some(Body { kind, cells })
+            })
+            .collect();
+        bodies.sort();
+        let position = Position {
+            ground: self.ground,
+            bodies,
+            items: self.items,
+            keys: self.keys,
+        };
+        (position, self.touched, self.places)
+    }
+
+    fn kind(&self, body: usize) -> &'w BodyKind {
+        self.world.mechanics.body(self.kinds[body])
+    }
+
+    fn ground(&self, cell: Cell) -> &'w GroundKind {
+        let at = self.world.size.index(cell);
+        self.world.mechanics.ground(self.ground[at])
+    }
+
+    fn turn_ground_into(&mut self, cell: Cell, id: &crate::level::KindId) {
+        if let Some(ground) = self.world.mechanics.find_ground(id) {
+            self.ground[self.world.size.index(cell)] = ground;
+        }
+    }
+
+    fn body_at(&self, cell: Cell) -> Option<usize> {
+        let covers = |cells: &Option<Vec<Cell>>| cells.iter().flatten().any(|&c| c == cell);
+        self.places.iter().position(covers)
+    }
+
+    fn is_walker(&self, body: usize) -> bool {
+        self.kind(body).role == Role::Walker
+    }
+
+    /// Where a single-cell body stands.
+    fn cell_of(&self, body: usize) -> Option<Cell> {
+        self.places[body]
+            .as_ref()
+            .and_then(|cells| cells.first().copied())
+    }
+
+    fn next(&self, cell: Cell, dir: Dir) -> Option<Cell> {
+        self.world.size.neighbour(cell, dir)
+    }
+
+    /// `may_enter(b, q, d)`; `None` is a cell off the board.
+    fn may_enter(&self, body: usize, cell: Option<Cell>, dir: Dir) -> bool {
+        let Some(cell) = cell else { return false };
+        if self.world.shut == Some(cell) {
+            return false;
+        }
+        let (kind, ground) = (self.kind(body), self.ground(cell));
+        let role_is_let_in = !ground.closed_to.contains(&kind.role);
+        let direction_is_let_in = ground.enter_only.is_empty() || ground.enter_only.contains(&dir);
+        let gate_is_open = ground.gate.as_ref().is_none_or(|gate| match gate.opens {
+            Opens::WhenHeld => self.held.contains(&gate.channel),
+            Opens::WhenFree => !self.held.contains(&gate.channel),
+        });
+        let sink_is_let_in = ground.sink.is_none() || (kind.role == Role::Cargo && kind.fills);
+        let lock_is_let_in = ground.lock.as_ref().is_none_or(|lock| {
+            kind.role == Role::Walker && self.keys.get(&lock.channel).is_some_and(|&n| n > 0)
+        });
+        role_is_let_in && direction_is_let_in && gate_is_open && sink_is_let_in && lock_is_let_in
+    }
+
+    /// `land(b, q, d)`, for single-cell bodies.
+    fn land(&mut self, body: usize, cell: Cell) {
+        self.leave(body);
+        self.come_onto(body, cell);
+        if let Some(lock) = &self.ground(cell).lock {
+            self.spend_key(&lock.channel);
+            self.turn_ground_into(cell, &lock.becomes);
+        }
+        self.take_item(body, cell);
+        if let Some(becomes) = &self.ground(cell).sink {
+            self.places[body] = None;
+            self.turn_ground_into(cell, becomes);
+            return;
+        }
+        if let Some(twin) = self.twin(cell)
+            && self.body_at(twin).is_none()
+            && self.world.shut != Some(twin)
+        {
+            self.leave(body);
+            self.come_onto(body, twin);
+            self.take_item(body, twin);
+        }
+    }
+
+    /// The body is about to stand elsewhere: frail ground under it changes now.
+    fn leave(&mut self, body: usize) {
+        if let Some(cell) = self.cell_of(body)
+            && let Some(becomes) = &self.ground(cell).frail
+        {
+            self.turn_ground_into(cell, becomes);
+        }
+    }
+
+    fn come_onto(&mut self, body: usize, cell: Cell) {
+        self.places[body] = Some(vec![cell]);
+        self.touched.insert(cell);
+    }
+
+    fn spend_key(&mut self, channel: &Channel) {
+        if let Some(count) = self.keys.get_mut(channel) {
+            *count -= 1;
+            if *count == 0 {
+                self.keys.remove(channel);
+            }
+        }
+    }
+
+    fn take_item(&mut self, body: usize, cell: Cell) {
+        if !self.is_walker(body) {
+            return;
+        }
+        if let Some(item) = self.items[self.world.size.index(cell)].take()
+            && let Item::Key(channel) = &self.world.mechanics.item(item).item
+        {
+            *self.keys.entry(channel.clone()).or_insert(0) += 1;
+        }
+    }
+
+    /// The other cell whose ground is, as of now, a warp of the same channel.
+    fn twin(&self, cell: Cell) -> Option<Cell> {
+        let channel = self.ground(cell).warp.as_ref()?;
+        self.world
+            .size
+            .cells()
+            .find(|&other| other != cell && self.ground(other).warp.as_ref() == Some(channel))
+    }
+
+    /// `slide(b, d, shoved)`.
+    fn slide(&mut self, body: usize, dir: Dir, shoved: bool) {
+        let mut stood_on = BTreeSet::new();
+        while let Some(cell) = self.cell_of(body) {
+            let come_again = !stood_on.insert(cell);
+            let keeps_moving = self.ground(cell).slick || (self.kind(body).glide && shoved);
+            if come_again || !keeps_moving {
+                return;
+            }
+            let next = self.next(cell, dir);
+            match next {
+                Some(next)
+                    if self.may_enter(body, Some(next), dir) && self.body_at(next).is_none() =>
+                {
+                    self.land(body, next);
+                }
+                _ => return,
+            }
+        }
+    }
+
+    /// A step under control Steer.
+    fn walk(&mut self, dir: Dir) {
+        let mut walkers: Vec<(i32, Cell, usize)> = (0..self.kinds.len())
+            .filter(|&body| self.is_walker(body))
+            .filter_map(|body| {
+                let cell = self.cell_of(body)?;
+                let (dx, dy) = dir.delta();
+                let forward = dx * i32::from(cell.x) + dy * i32::from(cell.y);
+                Some((-forward, cell, body))
+            })
+            .collect();
+        walkers.sort();
+        for (_, cell, walker) in walkers {
+            self.walk_one(walker, cell, dir);
+        }
+    }
+
+    fn walk_one(&mut self, walker: usize, from: Cell, dir: Dir) {
+        let ahead = self.next(from, dir);
+        let Some(to) = ahead else { return };
+        if !self.may_enter(walker, ahead, dir) {
+            return;
+        }
+        if let Some(other) = self.body_at(to)
+            && (self.is_walker(other) || !self.push_row(to, dir))
+        {
+            return;
+        }
+        if self.body_at(to).is_some() || !self.may_enter(walker, ahead, dir) {
+            return;
+        }
+        self.land(walker, to);
+        self.slide(walker, dir, false);
+        self.tow(from, dir);
+    }
+
+    /// Pushes the unbroken row of bodies that begins at `first`. Returns whether the walker need not stay.
+    fn push_row(&mut self, first: Cell, dir: Dir) -> bool {
+        let mut row = Vec::new();
+        let mut beyond = Some(first);
+        while let Some(cell) = beyond
+            && let Some(body) = self.body_at(cell)
+        {
+            row.push((body, self.next(cell, dir)));
+            beyond = self.next(cell, dir);
+        }
+        let too_long = row.len() > usize::from(self.world.mechanics.strength);
+        let stuck = row.iter().any(|&(body, next)| {
+            self.is_walker(body) || !self.kind(body).push || !self.may_enter(body, next, dir)
+        });
+        if too_long || stuck || beyond.is_none() {
+            return false;
+        }
+        for &(body, next) in row.iter().rev() {
+            match next {
+                Some(to) if self.body_at(to).is_none() && self.may_enter(body, next, dir) => {
+                    self.land(body, to);
+                    self.slide(body, dir, true);
+                }
+                _ => return false,
+            }
+        }
+        true
+    }
+
+    /// The walker has left `from`; cargo behind that cell may follow onto it.
+    fn tow(&mut self, from: Cell, dir: Dir) {
+        let behind = self.next(from, dir.opposite());
+        let Some(body) = behind.and_then(|cell| self.body_at(cell)) else {
+            return;
+        };
+        let follows = !self.is_walker(body) && self.kind(body).tow;
+        if follows && self.body_at(from).is_none() && self.may_enter(body, Some(from), dir) {
+            self.land(body, from);
+            self.slide(body, dir, true);
+        }
+    }
+
+    /// A step under control Drag: the block that covers `cell`. Returns the block's number if it could move.
+    fn drag(&mut self, cell: Cell, dir: Dir) -> Option<usize> {
+        let block = self.body_at(cell)?;
+        if !self.kind(block).axis.is_some_and(|axis| axis.allows(dir)) {
+            return None;
+        }
+        let old = self.places[block].clone()?;
+        let new: Vec<Cell> = old
+            .iter()
+            .map(|&cell| self.next(cell, dir))
+            .collect::<Option<_>>()?;
+        let single = old.len() == 1;
+        let may_stand = |&cell: &Cell| {
+            let ground = self.ground(cell);
+            let closed_to_large = ground.slick
+                || ground.sink.is_some()
+                || ground.warp.is_some()
+                || ground.lock.is_some();
+            self.body_at(cell).is_none_or(|other| other == block)
+                && self.may_enter(block, Some(cell), dir)
+                && (single || !closed_to_large)
+        };
+        if !new.iter().all(may_stand) {
+            return None;
+        }
+        if single {
+            self.land(block, new[0]);
+            self.slide(block, dir, false);
+        } else {
+            self.shift(block, &old, &new);
+        }
+        Some(block)
+    }
+
+    /// Moves a block of several cells; frail ground changes on each cell that it has left altogether.
+    fn shift(&mut self, block: usize, old: &[Cell], new: &[Cell]) {
+        for &cell in old.iter().filter(|cell| !new.contains(cell)) {
+            if let Some(becomes) = &self.ground(cell).frail {
+                self.turn_ground_into(cell, becomes);
+            }
+        }
+        self.places[block] = Some(sorted(new.to_vec()));
+        self.touched.extend(new.iter().copied());
+    }
+}
+
+fn sorted(mut cells: Vec<Cell>) -> Vec<Cell> {
+    cells.sort();
+    cells
+}
