@@ -1,0 +1,379 @@
+//! Pictures of kinds as textures, crisp at every zoom.
+//!
+//! A kind is drawn from the first of these that there is: the picture of its `look`, the built-in picture of its id, the
+//! shape of its `look`, a shape made from its traits ([`super::shapes`]). All of them end as a small square image for each
+//! size in use. Sizes are rounded up to a bucket, so that zooming makes a few images and not one a frame; a frame spends
+//! only [`FRAME_BUDGET`] on making them, shows the nearest size that it has meanwhile, and asks to be drawn again. The
+//! cost in memory is bounded: past [`MOST_BYTES`] the sizes that the last frame did not use are given back.
+
+use super::shapes;
+use crate::level::{BodyIx, Cell, Dir, GroundIx, GroundKind, ItemIx, KindId, Look, Mechanics};
+use egui::{Color32, ColorImage, Mesh, Painter, Pos2, Rect, TextureHandle, TextureOptions};
+use resvg::{tiny_skia, usvg};
+use rustc_hash::FxHashMap;
+use std::path::{Path, PathBuf};
+use std::sync::Arc;
+use std::time::{Duration, Instant};
+
+/// Time that one frame may spend on making images.
+const FRAME_BUDGET: Duration = Duration::from_millis(3);
+
+/// Bytes of images above which unused sizes are given back.
+const MOST_BYTES: usize = 48 << 20;
+
+/// Greatest side of an image, in pixels; greater cells show this one magnified.
+const MOST_PIXELS: u32 = 512;
+
+/// A kind of any layer.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, Hash)]
+pub enum Kind {
+    /// A ground.
+    Ground(GroundIx),
+    /// A body.
+    Body(BodyIx),
+    /// An item.
+    Item(ItemIx),
+}
+
+/// What a kind's images are made from.
+enum Source {
+    Drawn { tree: usvg::Tree, turn_degrees: f32 },
+    Flat(Color32),
+}
+
+struct Image {
+    texture: TextureHandle,
+    pixels: u32,
+    used_in: u64,
+}
+
+/// All pictures of the pack on the desk.
+#[derive(Default)]
+pub struct Pictures {
+    mechanics: Option<Arc<Mechanics>>,
+    folder: Option<PathBuf>,
+    sources: FxHashMap<Kind, Source>,
+    images: FxHashMap<Kind, Vec<Image>>,
+    colours: FxHashMap<Kind, Color32>,
+    frame: u64,
+    bytes: usize,
+    spent: Duration,
+    made: usize,
+}
+
+impl Pictures {
+    /// No pictures yet.
+    pub fn new() -> Pictures {
+        Pictures::default()
+    }
+
+    /// Call at the start of each frame. `pack` is the pack's file; picture files are found beside it.
+    pub fn begin_frame(&mut self, mechanics: &Arc<Mechanics>, pack: Option<&Path>) {
+        let folder = pack.and_then(Path::parent);
+        let same_kinds = self
+            .mechanics
+            .as_ref()
+            .is_some_and(|old| Arc::ptr_eq(old, mechanics) || old == mechanics);
+        if !same_kinds || self.folder.as_deref() != folder {
+            *self = Pictures {
+                folder: folder.map(Path::to_path_buf),
+                frame: self.frame,
+                ..Pictures::default()
+            };
+        }
+        self.mechanics = Some(Arc::clone(mechanics));
+        self.frame += 1;
+        self.spent = Duration::ZERO;
+        self.made = 0;
+        if self.bytes > MOST_BYTES {
+            self.give_back();
+        }
+    }
+
+    /// Draws a kind in a square.
+    pub fn paint(&mut self, painter: &Painter, kind: Kind, rect: Rect) {
+        self.paint_all(painter, kind, std::slice::from_ref(&rect));
+    }
+
+    /// Draws a kind in many squares of one size, as one mesh.
+    pub fn paint_all(&mut self, painter: &Painter, kind: Kind, rects: &[Rect]) {
+        self.paint_tinted(painter, kind, rects, Color32::WHITE);
+    }
+
+    /// The same, each pixel multiplied by `tint`; white leaves it as it is.
+    pub fn paint_tinted(&mut self, painter: &Painter, kind: Kind, rects: &[Rect], tint: Color32) {
+        let Some(first) = rects.first() else {
+            return;
+        };
+        let pixels = bucket(first.width() * painter.pixels_per_point());
+        match self.texture(painter.ctx(), kind, pixels) {
+            Some(texture) => {
+                let mut mesh = Mesh::with_texture(texture);
+                let whole = Rect::from_min_max(Pos2::ZERO, Pos2::new(1.0, 1.0));
+                for rect in rects {
+                    mesh.add_rect_with_uv(*rect, whole, tint);
+                }
+                painter.add(mesh);
+            }
+            None => {
+                let mut mesh = Mesh::default();
+                let colour = self.colour(kind);
+                for rect in rects {
+                    mesh.add_colored_rect(*rect, colour);
+                }
+                painter.add(mesh);
+            }
+        }
+    }
+
+    /// Draws a body of one or more cells: its picture on each, joined by its colour where cells touch.
+    pub fn paint_block(
+        &mut self,
+        painter: &Painter,
+        kind: BodyIx,
+        cells: &[Cell],
+        rect_of: impl Fn(Cell) -> Rect,
+    ) {
+        let kind = Kind::Body(kind);
+        let rects: Vec<Rect> = cells.iter().map(|&cell| rect_of(cell)).collect();
+        if cells.len() > 1 {
+            let colour = self.colour(kind);
+            for (at, &cell) in cells.iter().enumerate() {
+                for &other in &cells[at + 1..] {
+                    let apart = (i32::from(cell.x) - i32::from(other.x)).abs()
+                        + (i32::from(cell.y) - i32::from(other.y)).abs();
+                    if apart == 1 {
+                        let (one, two) = (rect_of(cell), rect_of(other));
+                        let inset = one.width() * 0.2;
+                        painter.rect_filled(one.union(two).shrink(inset), 0.0, colour);
+                    }
+                }
+            }
+        }
+        self.paint_all(painter, kind, &rects);
+    }
+
+    /// The colour that stands for a kind where there is no room for its picture: the mean of what is drawn.
+    pub fn colour(&mut self, kind: Kind) -> Color32 {
+        if let Some(colour) = self.colours.get(&kind) {
+            return *colour;
+        }
+        let colour = match self.source(kind) {
+            Some(source) => mean(&rasterise(source, 16)),
+            None => Color32::GRAY,
+        };
+        self.colours.insert(kind, colour);
+        colour
+    }
+
+    /// The texture of a kind at a size in pixels, or the nearest size that there is while that one is being made.
+    fn texture(&mut self, ctx: &egui::Context, kind: Kind, pixels: u32) -> Option<egui::TextureId> {
+        let frame = self.frame;
+        let sizes = self.images.entry(kind).or_default();
+        if let Some(image) = sizes.iter_mut().find(|image| image.pixels == pixels) {
+            image.used_in = frame;
+            return Some(image.texture.id());
+        }
+        if self.made == 0 || self.spent < FRAME_BUDGET {
+            return self.make(ctx, kind, pixels);
+        }
+        ctx.request_repaint();
+        let nearest = self
+            .images
+            .get_mut(&kind)?
+            .iter_mut()
+            .min_by_key(|image| image.pixels.abs_diff(pixels))?;
+        nearest.used_in = frame;
+        Some(nearest.texture.id())
+    }
+
+    fn make(&mut self, ctx: &egui::Context, kind: Kind, pixels: u32) -> Option<egui::TextureId> {
+        let since = Instant::now();
+        let image = rasterise(self.source(kind)?, pixels);
+        let texture = ctx.load_texture(format!("{kind:?} {pixels}"), image, TextureOptions::LINEAR);
+        let id = texture.id();
+        self.images.entry(kind).or_default().push(Image {
+            texture,
+            pixels,
+            used_in: self.frame,
+        });
+        self.bytes += bytes_of(pixels);
+        self.spent += since.elapsed();
+        self.made += 1;
+        Some(id)
+    }
+
+    fn source(&mut self, kind: Kind) -> Option<&Source> {
+        if !self.sources.contains_key(&kind) {
+            let source = find_source(self.mechanics.as_ref()?, self.folder.as_deref(), kind)?;
+            self.sources.insert(kind, source);
+        }
+        self.sources.get(&kind)
+    }
+
+    fn give_back(&mut self) {
+        let last = self.frame.saturating_sub(1);
+        for sizes in self.images.values_mut() {
+            sizes.retain(|image| image.used_in >= last);
+        }
+        self.bytes = self
+            .images
+            .values()
+            .flatten()
+            .map(|image| bytes_of(image.pixels))
+            .sum();
+    }
+}
+
+fn bytes_of(pixels: u32) -> usize {
+    pixels as usize * pixels as usize * 4
+}
+
+/// The size of image for a side in pixels: exact to 2 when small, coarser when great, never smaller than asked.
+fn bucket(side: f32) -> u32 {
+    let side = (side.round().max(2.0) as u32).min(MOST_PIXELS);
+    let step = match side {
+        0..=64 => 2,
+        65..=128 => 4,
+        129..=256 => 8,
+        _ => 32,
+    };
+    side.div_ceil(step) * step
+}
+
+fn find_source(mechanics: &Mechanics, folder: Option<&Path>, kind: Kind) -> Option<Source> {
+    let (look, id, one_way) = match kind {
+        Kind::Ground(ix) => {
+            let kind = mechanics.grounds.get(usize::from(ix.0))?;
+            (&kind.look, &kind.id, Some(kind))
+        }
+        Kind::Body(ix) => {
+            let kind = mechanics.bodies.get(usize::from(ix.0))?;
+            (&kind.look, &kind.id, None)
+        }
+        Kind::Item(ix) => {
+            let kind = mechanics.items.get(usize::from(ix.0))?;
+            (&kind.look, &kind.id, None)
+        }
+    };
+    let drawn = match look {
+        Some(Look::Picture(picture)) => folder.and_then(|folder| own_picture(folder, picture)),
+        Some(Look::Drawing(drawing)) => {
+            parse(shapes::drawing(drawing, one_way.is_some()).as_bytes(), 0.0)
+        }
+        Some(Look::BuiltIn(name)) => built_in(name, one_way),
+        None => None,
+    };
+    drawn
+        .or_else(|| by_id(id, one_way))
+        .or_else(|| {
+            let svg = match kind {
+                Kind::Ground(ix) => shapes::ground(mechanics, mechanics.ground(ix)),
+                Kind::Body(ix) => shapes::body(mechanics, mechanics.body(ix)),
+                Kind::Item(ix) => shapes::item(mechanics, mechanics.item(ix)),
+            };
+            parse(svg.as_bytes(), 0.0)
+        })
+        .or(Some(Source::Flat(Color32::GRAY)))
+}
+
+fn by_id(id: &KindId, ground: Option<&GroundKind>) -> Option<Source> {
+    built_in(id.as_str(), ground)
+}
+
+/// A built-in picture. Those of ground that is entered one way only face east and are turned; where there are several ways in,
+/// the shape from the traits says more.
+fn built_in(name: &str, ground: Option<&GroundKind>) -> Option<Source> {
+    let ways: &[Dir] = ground.map_or(&[], |kind| &kind.enter_only);
+    let turn_degrees = match ways {
+        [] => 0.0,
+        [dir] => shapes::turn_degrees(*dir) as f32,
+        _ => return None,
+    };
+    parse(built_in_svg(name)?, turn_degrees)
+}
+
+fn built_in_svg(_name: &str) -> Option<&'static [u8]> {
+    None
+}
+
+fn own_picture(_folder: &Path, _picture: &crate::level::Picture) -> Option<Source> {
+    None
+}
+
+fn parse(svg: &[u8], turn_degrees: f32) -> Option<Source> {
+    let tree = usvg::Tree::from_data(svg, &usvg::Options::default()).ok()?;
+    Some(Source::Drawn { tree, turn_degrees })
+}
+
+fn rasterise(source: &Source, pixels: u32) -> ColorImage {
+    let side = pixels as usize;
+    match source {
+        Source::Flat(colour) => ColorImage::filled([side, side], *colour),
+        Source::Drawn { tree, turn_degrees } => {
+            let Some(mut pixmap) = tiny_skia::Pixmap::new(pixels, pixels) else {
+                return ColorImage::filled([1, 1], Color32::TRANSPARENT);
+            };
+            let size = tree.size();
+            let middle = pixels as f32 / 2.0;
+            let fit = tiny_skia::Transform::from_scale(
+                pixels as f32 / size.width(),
+                pixels as f32 / size.height(),
+            )
+            .post_concat(tiny_skia::Transform::from_rotate_at(
+                *turn_degrees,
+                middle,
+                middle,
+            ));
+            resvg::render(tree, fit, &mut pixmap.as_mut());
+            ColorImage::from_rgba_premultiplied([side, side], pixmap.data())
+        }
+    }
+}
+
+/// The mean colour of what is opaque.
+fn mean(image: &ColorImage) -> Color32 {
+    let mut sums = [0u32; 4];
+    for pixel in &image.pixels {
+        for (sum, value) in sums.iter_mut().zip(pixel.to_array()) {
+            *sum += u32::from(value);
+        }
+    }
+    let opaque = sums[3].max(1);
+    // Premultiplied channels over the sum of alphas give the mean of the drawn part.
+    let part = |sum: u32| (sum * 255 / opaque).min(255) as u8;
+    Color32::from_rgb(part(sums[0]), part(sums[1]), part(sums[2]))
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn sizes_round_up_to_a_few() {
+        let check = |side: f32, expected: u32| assert_eq!(bucket(side), expected, "{side}");
+        check(0.0, 2);
+        check(40.0, 40);
+        check(41.0, 42);
+        check(100.3, 100);
+        check(101.0, 104);
+        check(9_000.0, 512);
+    }
+
+    #[test]
+    fn a_turned_picture_is_the_picture_turned() {
+        let svg = br##"<svg xmlns="http://www.w3.org/2000/svg" viewBox="0 0 8 8"><rect x="4" y="0" width="4" height="8" fill="#ff0000"/></svg>"##;
+        let image = |turn: f32| rasterise(&parse(svg, turn).expect("it is an SVG"), 8);
+        let red = |image: &ColorImage, x: usize, y: usize| image.pixels[y * 8 + x].r() > 200;
+        let (east, south) = (image(0.0), image(90.0));
+        assert!(red(&east, 6, 1) && !red(&east, 1, 6));
+        assert!(red(&south, 1, 6) && !red(&south, 6, 1));
+    }
+
+    #[test]
+    fn the_mean_leaves_out_what_is_transparent() {
+        let svg = br##"<svg xmlns="http://www.w3.org/2000/svg" viewBox="0 0 8 8"><rect width="4" height="8" fill="#204060"/></svg>"##;
+        let colour = mean(&rasterise(&parse(svg, 0.0).expect("it is an SVG"), 8));
+        assert_eq!(colour, Color32::from_rgb(0x20, 0x40, 0x60));
+    }
+}
