@@ -7,7 +7,9 @@
 //! cost in memory is bounded: past [`MOST_BYTES`] the sizes that the last frame did not use are given back.
 
 use super::shapes;
-use crate::level::{BodyIx, Cell, Dir, GroundIx, GroundKind, ItemIx, KindId, Look, Mechanics};
+use crate::level::{
+    BodyIx, Brush, Cell, Dir, GroundIx, GroundKind, ItemIx, KindId, Look, Mechanics,
+};
 use egui::{Color32, ColorImage, Mesh, Painter, Pos2, Rect, TextureHandle, TextureOptions};
 use resvg::{tiny_skia, usvg};
 use rustc_hash::FxHashMap;
@@ -33,6 +35,18 @@ pub enum Kind {
     Body(BodyIx),
     /// An item.
     Item(ItemIx),
+}
+
+impl Kind {
+    /// The kind that a brush paints, if it paints one.
+    pub fn of(brush: Brush) -> Option<Kind> {
+        match brush {
+            Brush::Ground(ix) => Some(Kind::Ground(ix)),
+            Brush::Body(ix) => Some(Kind::Body(ix)),
+            Brush::Item(ix) => Some(Kind::Item(ix)),
+            Brush::Clear => None,
+        }
+    }
 }
 
 /// What a kind's images are made from.
@@ -67,9 +81,13 @@ impl Pictures {
         Pictures::default()
     }
 
-    /// Call at the start of each frame. `pack` is the pack's file; picture files are found beside it.
-    pub fn begin_frame(&mut self, mechanics: &Arc<Mechanics>, pack: Option<&Path>) {
-        let folder = pack.and_then(Path::parent);
+    /// Once a frame, before anything is painted: notes which kinds there are and in which folder their picture files lie.
+    pub fn begin_frame(
+        &mut self,
+        _ctx: &egui::Context,
+        mechanics: &Arc<Mechanics>,
+        folder: Option<&Path>,
+    ) {
         let same_kinds = self
             .mechanics
             .as_ref()
@@ -90,18 +108,13 @@ impl Pictures {
         }
     }
 
-    /// Draws a kind in a square.
-    pub fn paint(&mut self, painter: &Painter, kind: Kind, rect: Rect) {
-        self.paint_all(painter, kind, std::slice::from_ref(&rect));
+    /// Paints a kind into `rect`, each pixel multiplied by `tint` (white for as it is).
+    pub fn paint(&mut self, painter: &Painter, rect: Rect, kind: Kind, tint: Color32) {
+        self.paint_all(painter, std::slice::from_ref(&rect), kind, tint);
     }
 
-    /// Draws a kind in many squares of one size, as one mesh.
-    pub fn paint_all(&mut self, painter: &Painter, kind: Kind, rects: &[Rect]) {
-        self.paint_tinted(painter, kind, rects, Color32::WHITE);
-    }
-
-    /// The same, each pixel multiplied by `tint`; white leaves it as it is.
-    pub fn paint_tinted(&mut self, painter: &Painter, kind: Kind, rects: &[Rect], tint: Color32) {
+    /// Paints a kind into many squares of one size, as one mesh: for the ground of a large level.
+    pub fn paint_all(&mut self, painter: &Painter, rects: &[Rect], kind: Kind, tint: Color32) {
         let Some(first) = rects.first() else {
             return;
         };
@@ -117,7 +130,7 @@ impl Pictures {
             }
             None => {
                 let mut mesh = Mesh::default();
-                let colour = self.colour(kind);
+                let colour = self.colour(kind) * tint;
                 for rect in rects {
                     mesh.add_colored_rect(*rect, colour);
                 }
@@ -133,11 +146,12 @@ impl Pictures {
         kind: BodyIx,
         cells: &[Cell],
         rect_of: impl Fn(Cell) -> Rect,
+        tint: Color32,
     ) {
         let kind = Kind::Body(kind);
         let rects: Vec<Rect> = cells.iter().map(|&cell| rect_of(cell)).collect();
         if cells.len() > 1 {
-            let colour = self.colour(kind);
+            let colour = self.colour(kind) * tint;
             for (at, &cell) in cells.iter().enumerate() {
                 for &other in &cells[at + 1..] {
                     let apart = (i32::from(cell.x) - i32::from(other.x)).abs()
@@ -150,7 +164,7 @@ impl Pictures {
                 }
             }
         }
-        self.paint_all(painter, kind, &rects);
+        self.paint_all(painter, &rects, kind, tint);
     }
 
     /// The colour that stands for a kind where there is no room for its picture: the mean of what is drawn.
