@@ -9,6 +9,7 @@ mod history;
 mod kinds;
 mod pack;
 mod problems;
+mod reshape;
 mod route;
 
 pub use edit::{Brush, box_cells, flood_cells, line_cells};
@@ -21,4 +22,5 @@ pub use kinds::{
 };
 pub use pack::{Block, Level, Pack, Par};
 pub use problems::{Problem, Severity, problems};
+pub use reshape::Turn;
 pub use route::{DragStep, Route};
