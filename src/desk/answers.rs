@@ -195,11 +195,10 @@ impl State {
 
     fn hear_tile(&mut self, revision: u64, cell: Cell, class: TileClass, left: usize) {
         let size = self.current().size;
-        let known = self
-            .answers
-            .tiles
-            .take()
-            .filter(|tiles| tiles.revision == revision && tiles.value.classes.len() == size.area());
+        let known =
+            self.answers.tiles.take().filter(|tiles| {
+                tiles.revision == revision && tiles.value.classes.len() == size.area()
+            });
         let mut tiles = known.map_or_else(
             || Tiles {
                 classes: vec![None; size.area()],

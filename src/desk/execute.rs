@@ -214,10 +214,14 @@ impl State {
             } => self.add_level(&name, width, height),
             Action::DuplicateLevel(level) => self.duplicate_level(level),
             Action::AskRename(level) => {
-                self.dialog = self.pack.levels.get(level).map(|named| Dialog::RenameLevel {
-                    level,
-                    name: named.name.clone(),
-                });
+                self.dialog = self
+                    .pack
+                    .levels
+                    .get(level)
+                    .map(|named| Dialog::RenameLevel {
+                        level,
+                        name: named.name.clone(),
+                    });
             }
             Action::RenameLevel(level, name) => self.rename_level(level, name),
             Action::DeleteLevel(level) => self.delete_level(level),

@@ -1,7 +1,7 @@
 //! The levels of the pack as a list: adding, copying, renaming, moving, resizing.
 
 use super::state::{Brush, State};
-use crate::level::{Cell, GroundIx, Level, Mechanics, Pack, Size, box_cells};
+use crate::level::{Cell, GroundIx, Level, Mechanics, Pack, Size};
 use std::sync::Arc;
 
 /// Columns and rows of a level that nobody chose a size for.
@@ -47,8 +47,7 @@ pub fn resized(mechanics: &Mechanics, level: &Level, size: Size, anchor: (u8, u8
     let dy = shift(level.size.height(), size.height(), anchor.1);
     let moved = |cell: Cell| -> Option<Cell> {
         let (x, y) = (i32::from(cell.x) + dx, i32::from(cell.y) + dy);
-        let fits =
-            (0..size.width() as i32).contains(&x) && (0..size.height() as i32).contains(&y);
+        let fits = (0..size.width() as i32).contains(&x) && (0..size.height() as i32).contains(&y);
         fits.then(|| Cell::new(x as u8, y as u8))
     };
     let outside = mechanics.closed_ground().unwrap_or(GroundIx(0));
@@ -135,7 +134,11 @@ impl State {
         if let Some(original) = self.pack.levels.get(level) {
             let mut copy = Level::clone(original);
             copy.name = format!("{} copy", copy.name);
-            self.insert_level(format!("duplicated level {}", level + 1), level + 1, Arc::new(copy));
+            self.insert_level(
+                format!("duplicated level {}", level + 1),
+                level + 1,
+                Arc::new(copy),
+            );
         }
     }
 
@@ -234,7 +237,12 @@ impl State {
             self.history.redo(&mut self.pack)
         };
         let Some(label) = label else {
-            self.said = if undo { "nothing to undo" } else { "nothing to redo" }.to_owned();
+            self.said = if undo {
+                "nothing to undo"
+            } else {
+                "nothing to redo"
+            }
+            .to_owned();
             return;
         };
         self.said = format!("{}: {label}", if undo { "undone" } else { "redone" });

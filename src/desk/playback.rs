@@ -31,7 +31,12 @@ pub struct Playback {
 
 impl Playback {
     /// Lays out a route from its start. None if the level does not take every step of it.
-    pub fn new(rules: Arc<Rules>, revision: u64, route: Route, spans: Vec<u32>) -> Option<Playback> {
+    pub fn new(
+        rules: Arc<Rules>,
+        revision: u64,
+        route: Route,
+        spans: Vec<u32>,
+    ) -> Option<Playback> {
         let steps = rules.play(&route);
         if steps.len() != route.len() {
             return None;

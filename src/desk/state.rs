@@ -422,7 +422,10 @@ impl State {
         self.rules = Rules::compile(&self.pack.mechanics, &level)
             .ok()
             .map(Arc::new);
-        let last_route = self.playback.as_ref().map(|playback| playback.route.clone());
+        let last_route = self
+            .playback
+            .as_ref()
+            .map(|playback| playback.route.clone());
         if !edited {
             self.answers = Answers::default();
             self.playback = None;

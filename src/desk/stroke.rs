@@ -144,7 +144,11 @@ impl State {
 
     /// Painting is about the start of the level, so that the start is what is shown.
     fn back_to_start(&mut self) {
-        if self.playback.as_ref().is_some_and(|playback| playback.at > 0) {
+        if self
+            .playback
+            .as_ref()
+            .is_some_and(|playback| playback.at > 0)
+        {
             self.scrub(0);
         }
     }

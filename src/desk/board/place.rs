@@ -1,0 +1,115 @@
+//! Where the cells of the level lie on the screen.
+
+use crate::desk::state::BoardView;
+use crate::level::{Cell, Size};
+use egui::{Pos2, Rect, Vec2, pos2, vec2};
+
+/// Maps cells to the screen and back, for one frame.
+#[derive(Clone, Copy, Debug)]
+pub struct Place {
+    /// Size of the level.
+    pub size: Size,
+    /// The part of the window that the board may use.
+    pub panel: Rect,
+    /// Top left corner of cell (0, 0), on a whole pixel.
+    pub origin: Pos2,
+    /// Side of a cell, in points; a whole number of pixels.
+    pub cell_points: f32,
+}
+
+impl Place {
+    /// The place of a level so that all of it is seen.
+    pub fn fit(size: Size, panel: Rect, pixels_per_point: f32) -> Place {
+        let margin = 16.0;
+        let room = (panel.size() - Vec2::splat(2.0 * margin)).max(Vec2::splat(8.0));
+        let cell = (room.x / size.width() as f32).min(room.y / size.height() as f32);
+        let view = BoardView {
+            cell_points: cell.min(96.0),
+            centre: (size.width() as f32 / 2.0, size.height() as f32 / 2.0),
+        };
+        Place::of(view, size, panel, pixels_per_point)
+    }
+
+    /// The place that a view asks for.
+    pub fn of(view: BoardView, size: Size, panel: Rect, pixels_per_point: f32) -> Place {
+        let to_pixel = |points: f32| (points * pixels_per_point).round() / pixels_per_point;
+        let least = 1.0 / pixels_per_point;
+        let cell_points =
+            ((view.cell_points * pixels_per_point + 0.001).floor() / pixels_per_point).max(least);
+        let centre = vec2(view.centre.0, view.centre.1) * cell_points;
+        let corner = panel.center() - centre;
+        Place {
+            size,
+            panel,
+            origin: pos2(to_pixel(corner.x), to_pixel(corner.y)),
+            cell_points,
+        }
+    }
+
+    /// The view that this place shows.
+    pub fn view(&self) -> BoardView {
+        let centre = (self.panel.center() - self.origin) / self.cell_points;
+        BoardView {
+            cell_points: self.cell_points,
+            centre: (centre.x, centre.y),
+        }
+    }
+
+    /// The square of a cell.
+    pub fn rect(&self, cell: Cell) -> Rect {
+        let corner = self.origin + vec2(f32::from(cell.x), f32::from(cell.y)) * self.cell_points;
+        Rect::from_min_size(corner, Vec2::splat(self.cell_points))
+    }
+
+    /// The rectangle of the whole level.
+    pub fn level_rect(&self) -> Rect {
+        let side = vec2(self.size.width() as f32, self.size.height() as f32);
+        Rect::from_min_size(self.origin, side * self.cell_points)
+    }
+
+    /// The cell at a point of the screen, if it is on the level.
+    pub fn cell_at(&self, point: Pos2) -> Option<Cell> {
+        let at = ((point - self.origin) / self.cell_points).floor();
+        let inside = at.x >= 0.0
+            && at.y >= 0.0
+            && (at.x as usize) < self.size.width()
+            && (at.y as usize) < self.size.height();
+        inside.then(|| Cell::new(at.x as u8, at.y as u8))
+    }
+
+    /// The cell of the level that is nearest to a point of the screen.
+    pub fn nearest_cell(&self, point: Pos2) -> Cell {
+        let at = ((point - self.origin) / self.cell_points).floor();
+        let within = |at: f32, side: usize| at.clamp(0.0, side as f32 - 1.0) as u8;
+        Cell::new(
+            within(at.x, self.size.width()),
+            within(at.y, self.size.height()),
+        )
+    }
+
+    /// The cells that can be seen, row by row.
+    pub fn cells_in_view(&self) -> impl Iterator<Item = Cell> + use<> {
+        let seen = self.panel.intersect(self.level_rect());
+        let (first, last) = if seen.is_positive() {
+            (
+                self.nearest_cell(seen.min),
+                self.nearest_cell(seen.max - vec2(0.01, 0.01)),
+            )
+        } else {
+            (Cell::new(1, 1), Cell::new(0, 0))
+        };
+        (first.y..=last.y).flat_map(move |y| (first.x..=last.x).map(move |x| Cell::new(x, y)))
+    }
+
+    /// The view when the scale is multiplied by `factor` and the level stays put under `point`.
+    pub fn zoomed_about(&self, point: Pos2, factor: f32) -> BoardView {
+        let limits = crate::desk::execute::CELL_POINTS;
+        let cell_points = (self.cell_points * factor).clamp(*limits.start(), *limits.end());
+        let under = (point - self.origin) / self.cell_points;
+        let centre = under + (self.panel.center() - point) / cell_points;
+        BoardView {
+            cell_points,
+            centre: (centre.x, centre.y),
+        }
+    }
+}
