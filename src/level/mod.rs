@@ -10,6 +10,7 @@ mod kinds;
 mod pack;
 mod problems;
 mod reshape;
+mod rework;
 mod route;
 
 pub use edit::{Brush, box_cells, flood_cells, line_cells};
@@ -23,4 +24,5 @@ pub use kinds::{
 pub use pack::{Block, Level, Pack, Par};
 pub use problems::{Problem, Severity, problems};
 pub use reshape::Turn;
+pub use rework::{KindRef, Layer, ReworkError, Uses};
 pub use route::{DragStep, Route};
