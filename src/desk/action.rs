@@ -80,6 +80,8 @@ pub enum Action {
     SetView(BoardView),
     /// Show the whole level.
     Fit,
+    /// Mark these cells on the board until the next edit, as those that a problem is about.
+    MarkCells(Vec<Cell>),
     /// Show or hide an overlay.
     Toggle(ShowFlag),
     /// Dark, light, or as the system has it.
@@ -129,6 +131,8 @@ pub enum Action {
     },
     /// Note the route on the trail as the one that the designer means.
     MeanThisRoute,
+    /// Note the proved figures of the level on the board as its approved par.
+    ApprovePar,
     /// Ask again, with what is remembered about this level put aside by nothing but a new edit.
     StudyAgain,
     /// Stop the search; what is known stays.

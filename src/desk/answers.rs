@@ -63,21 +63,33 @@ impl Answers {
 /// Answers for the levels of the shelf, found by board, so that renamed, moved and restored levels keep theirs.
 #[derive(Clone, Debug, Default)]
 pub struct ShelfAnswers {
+    version: u64,
     by_board: FxHashMap<u64, Vec<(Arc<Level>, Answer)>>,
 }
 
 impl ShelfAnswers {
     /// The answer for a level with this board.
     pub fn get(&self, level: &Arc<Level>) -> Option<&Answer> {
+        self.get_hashed(board_hash(level), level)
+    }
+
+    /// The same for a level whose [`board_hash`] is known.
+    pub fn get_hashed(&self, hash: u64, level: &Arc<Level>) -> Option<&Answer> {
         self.by_board
-            .get(&board_hash(level))?
+            .get(&hash)?
             .iter()
             .find(|(known, _)| Arc::ptr_eq(known, level) || known.same_board(level))
             .map(|(_, answer)| answer)
     }
 
+    /// Grows whenever an answer changes.
+    pub fn version(&self) -> u64 {
+        self.version
+    }
+
     /// Remembers an answer, in place of an earlier one for the same board.
     pub fn put(&mut self, level: Arc<Level>, answer: Answer) {
+        self.version += 1;
         let known = self.by_board.entry(board_hash(&level)).or_default();
         known.retain(|(old, _)| !old.same_board(&level));
         known.push((level, answer));
@@ -85,11 +97,13 @@ impl ShelfAnswers {
 
     /// Forgets everything, as when the kinds change.
     pub fn clear(&mut self) {
+        self.version += 1;
         self.by_board.clear();
     }
 }
 
-fn board_hash(level: &Level) -> u64 {
+/// A hash of what a level asks, whatever its name, notes, route and par.
+pub fn board_hash(level: &Level) -> u64 {
     let mut hasher = FxHasher::default();
     level.size.hash(&mut hasher);
     level.ground.hash(&mut hasher);

@@ -49,6 +49,7 @@ impl State {
             | Action::AskResize
             | Action::ResizeLevel { .. }
             | Action::MeanThisRoute
+            | Action::ApprovePar
             | Action::StudyAgain
             | Action::StopSearch => self.execute_level(action),
             Action::RenamePack(_)
@@ -240,6 +241,7 @@ impl State {
                 anchor,
             } => self.resize_level(width, height, anchor),
             Action::MeanThisRoute => self.mean_this_route(),
+            Action::ApprovePar => self.approve_par(),
             Action::StopSearch => {
                 self.effects.push(Effect::Ask(crate::worker::Request::Stop));
                 self.said = "search stopped".to_owned();
@@ -303,6 +305,7 @@ impl State {
             }
             Action::SetView(view) => self.set_view(view),
             Action::Fit => self.view = None,
+            Action::MarkCells(cells) => self.marked = cells,
             Action::Toggle(flag) => self.show.toggle(flag),
             Action::SetTheme(theme) => self.settings.theme = theme,
             Action::ShowDialog(dialog) | Action::DialogChanged(dialog) => {

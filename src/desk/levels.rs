@@ -226,6 +226,29 @@ impl State {
         });
     }
 
+    /// Notes the proved figures of the level on the board as its approved par. A figure that is not proved is not approved.
+    pub(super) fn approve_par(&mut self) {
+        let proved = |figure: Option<crate::study::Figure>| {
+            figure
+                .filter(|figure| figure.proved)
+                .map(|figure| figure.fewest)
+        };
+        let par = match self.answers.report() {
+            Some((revision, report)) if self.is_fresh(revision) => crate::level::Par {
+                steps: proved(report.steps),
+                pushes: proved(report.pushes),
+            },
+            _ => return,
+        };
+        if par == crate::level::Par::default() {
+            return;
+        }
+        let at = self.level;
+        self.edit_pack("approved the par", |pack| {
+            Arc::make_mut(&mut pack.levels[at]).par = Some(par);
+        });
+    }
+
     /// Goes one step back (`undo`) or forward in the history.
     pub(super) fn travel(&mut self, undo: bool) {
         self.end_stroke();

@@ -69,6 +69,9 @@ pub struct Pictures {
     sources: FxHashMap<Kind, Source>,
     images: FxHashMap<Kind, Vec<Image>>,
     colours: FxHashMap<Kind, Color32>,
+    small: FxHashMap<(Kind, u32), Option<Arc<ColorImage>>>,
+    pub(super) thumbnails: super::thumbnail::Thumbnails,
+    pub(super) shelf_lines: super::shelf::Lines,
     frame: u64,
     bytes: usize,
     spent: Duration,
@@ -101,6 +104,7 @@ impl Pictures {
         }
         self.mechanics = Some(Arc::clone(mechanics));
         self.frame += 1;
+        self.thumbnails.begin_frame();
         self.spent = Duration::ZERO;
         self.made = 0;
         if self.bytes > MOST_BYTES {
@@ -178,6 +182,18 @@ impl Pictures {
         };
         self.colours.insert(kind, colour);
         colour
+    }
+
+    /// A kind's image of a few pixels, for thumbnails.
+    pub(super) fn small(&mut self, kind: Kind, pixels: u32) -> Option<Arc<ColorImage>> {
+        if let Some(known) = self.small.get(&(kind, pixels)) {
+            return known.clone();
+        }
+        let image = self
+            .source(kind)
+            .map(|source| Arc::new(rasterise(source, pixels)));
+        self.small.insert((kind, pixels), image.clone());
+        image
     }
 
     /// The texture of a kind at a size in pixels, or the nearest size that there is while that one is being made.

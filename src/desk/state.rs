@@ -326,6 +326,8 @@ pub struct State {
     pub shelf: ShelfAnswers,
     /// Problems of the level on the board, of the present revision.
     pub problems: Vec<Problem>,
+    /// Cells that are marked because a problem is about them.
+    pub marked: Vec<Cell>,
     /// The level on the board compiled, or none if it is invalid.
     pub rules: Option<Arc<Rules>>,
     /// The open dialog.
@@ -378,6 +380,7 @@ impl State {
             answers: Answers::default(),
             shelf: ShelfAnswers::default(),
             problems: Vec::new(),
+            marked: Vec::new(),
             rules: None,
             dialog: None,
             after_unsaved: None,
@@ -418,6 +421,7 @@ impl State {
     pub(super) fn level_changed(&mut self, edited: bool) {
         self.revision += 1;
         let level = Arc::clone(self.current());
+        self.marked.clear();
         self.problems = problems(&self.pack.mechanics, &level);
         self.rules = Rules::compile(&self.pack.mechanics, &level)
             .ok()

@@ -1,0 +1,28 @@
+//! The cards of the findings and the lines on them.
+
+use super::theme::Theme;
+use egui::{Align, CollapsingHeader, Layout, Response, RichText, Ui};
+
+/// A card that can be folded; `key` stays the same when the title changes. The content is drawn only while it is open.
+pub fn folding_card(ui: &mut Ui, key: &str, title: &str, content: impl FnOnce(&mut Ui)) {
+    let theme = Theme::of(ui);
+    theme.card().show(ui, |ui| {
+        ui.set_width(ui.available_width());
+        CollapsingHeader::new(RichText::new(title).strong().color(theme.text))
+            .id_salt(("card", key))
+            .default_open(true)
+            .show_unindented(ui, content);
+    });
+}
+
+/// A line with a caption at the left and its figure at the right end.
+pub fn figure_line(ui: &mut Ui, caption: &str, figure: &str) -> Response {
+    let theme = Theme::of(ui);
+    ui.horizontal(|ui| {
+        ui.label(RichText::new(caption).color(theme.muted));
+        ui.with_layout(Layout::right_to_left(Align::Center), |ui| {
+            ui.label(RichText::new(figure).color(theme.text));
+        });
+    })
+    .response
+}
