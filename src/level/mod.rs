@@ -22,7 +22,7 @@ pub use kinds::{
     Shape,
 };
 pub use pack::{Block, Level, Pack, Par};
-pub use problems::{Problem, Severity, problems};
+pub use problems::{Problem, Severity, problems, structural_problems};
 pub use reshape::Turn;
 pub use rework::{KindRef, Layer, ReworkError, Uses};
 pub use route::{DragStep, Route};

@@ -25,12 +25,29 @@ pub struct Problem {
     pub cells: Vec<Cell>,
 }
 
+/// The problems that make a level's board meaningless, whatever its objective: controls that don't fit, bodies that overlap,
+/// warps without a twin. The worst first.
+pub fn structural_problems(mechanics: &Mechanics, level: &Level) -> Vec<Problem> {
+    let mut found = Vec::new();
+    shape(mechanics, level, &mut found);
+    if found.is_empty() {
+        control(mechanics, level, &mut found);
+        warps(mechanics, level, &mut found);
+    }
+    found.sort_by_key(|problem| std::cmp::Reverse(problem.severity));
+    found
+}
+
 /// All problems of a level, the worst first.
 ///
 /// Only what is certain from the level as written is called invalid. A home that may turn into other ground, say, is not
 /// counted as a home that must be filled.
 pub fn problems(mechanics: &Mechanics, level: &Level) -> Vec<Problem> {
     let mut found = Vec::new();
+    shape(mechanics, level, &mut found);
+    if !found.is_empty() {
+        return found;
+    }
     control(mechanics, level, &mut found);
     objective(mechanics, level, &mut found);
     warps(mechanics, level, &mut found);
@@ -53,6 +70,80 @@ fn advice(text: impl Into<String>, cells: Vec<Cell>) -> Problem {
         text: text.into(),
         cells,
     }
+}
+
+/// The most cells that a block may have.
+const MAX_BLOCK: usize = 16;
+
+/// What must hold before anything else can be asked: every layer covers the board with known kinds, blocks are whole and overlap nothing.
+fn shape(mechanics: &Mechanics, level: &Level, found: &mut Vec<Problem>) {
+    let area = level.size.area();
+    let covers = [level.ground.len(), level.bodies.len(), level.items.len()] == [area; 3];
+    let known_ground = level
+        .ground
+        .iter()
+        .all(|ix| usize::from(ix.0) < mechanics.grounds.len());
+    let bodies = level.bodies.iter().flatten();
+    let known_body = bodies
+        .chain(level.blocks.iter().map(|block| &block.kind))
+        .all(|ix| usize::from(ix.0) < mechanics.bodies.len());
+    let known_item = level
+        .items
+        .iter()
+        .flatten()
+        .all(|ix| usize::from(ix.0) < mechanics.items.len());
+    if !(covers && known_ground && known_body && known_item) {
+        found.push(invalid(
+            "The layers of the level do not fit its board or its kinds. Open the pack again from its file.",
+            Vec::new(),
+        ));
+        return;
+    }
+    blocks(level, found);
+}
+
+fn blocks(level: &Level, found: &mut Vec<Problem>) {
+    let mut taken: Vec<bool> = level.bodies.iter().map(Option::is_some).collect();
+    for block in &level.blocks {
+        let on_board = block.cells.iter().all(|&cell| level.size.contains(cell));
+        if !on_board || block.cells.is_empty() || block.cells.len() > MAX_BLOCK {
+            let text =
+                format!("A block needs 1 to {MAX_BLOCK} cells, all on the board. Draw it again.");
+            found.push(invalid(text, Vec::new()));
+            continue;
+        }
+        let overlaps = block
+            .cells
+            .iter()
+            .any(|&cell| std::mem::replace(&mut taken[level.size.index(cell)], true));
+        if overlaps {
+            found.push(invalid(
+                "Two bodies stand on one cell. Take one of them away.",
+                block.cells.clone(),
+            ));
+        } else if !connected(&block.cells) {
+            found.push(invalid(
+                "The cells of a block do not hang together. Draw it in one piece.",
+                block.cells.clone(),
+            ));
+        }
+    }
+}
+
+fn connected(cells: &[Cell]) -> bool {
+    let touch = |a: Cell, b: Cell| a.x.abs_diff(b.x) + a.y.abs_diff(b.y) == 1;
+    let mut joined = vec![cells[0]];
+    let mut at = 0;
+    while at < joined.len() {
+        let from = joined[at];
+        for &cell in cells {
+            if touch(from, cell) && !joined.contains(&cell) {
+                joined.push(cell);
+            }
+        }
+        at += 1;
+    }
+    joined.len() == cells.len()
 }
 
 fn control(mechanics: &Mechanics, level: &Level, found: &mut Vec<Problem>) {

@@ -1,0 +1,223 @@
+//! Folding a walk: the positions that differ only in where the walker stands, found at once.
+
+use super::packing::Field;
+use super::{Rules, Scratch, Step};
+use crate::level::{Cell, Control, Dir};
+
+/// One position of a roam.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub struct Member {
+    /// Where the walker stands, as an index of the row-by-row order; [`Roam::NOWHERE`] if the roam isn't told by a walker's
+    /// cell.
+    pub cell: u16,
+    /// Fewest steps of the roam from the entry.
+    pub distance: u16,
+    /// Index of the member before it on a shortest walk from the entry; its own for the entry.
+    pub parent: u16,
+    /// Direction of the last step of that walk; of no meaning for the entry.
+    pub dir: Dir,
+}
+
+/// A step from a member that isn't one of the roam's own. It may change nothing; it may also lead, one way, to another member.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub struct Departure {
+    /// Index of the member.
+    pub member: u16,
+    /// The step to try there.
+    pub step: Step,
+}
+
+/// The roam of a position (rules.md, Folds), as [`Rules::roam`] fills it; reusable room.
+///
+/// Members and departures together tell all edges of the step graph that touch the roam: each step between members that is
+/// undone at once costs what the distances say, and any other step that changes something is among the departures. A
+/// one-way step that is a short cut to another member is a departure too, so a search by steps that follows members by
+/// distance and departures by one step misses no cheaper route.
+///
+/// Members come by distance; the first is the entry. The roam is the same from each of its members but for order,
+/// distances and parents, so the least cell ([`Rules::representative`]) names it.
+#[derive(Clone, Debug, Default)]
+pub struct Roam {
+    /// The positions, by distance from the entry, the entry first.
+    pub members: Vec<Member>,
+    /// The steps that may lead out.
+    pub departures: Vec<Departure>,
+    /// For each cell: the member on it, plus one.
+    at_cell: Vec<u16>,
+}
+
+impl Roam {
+    /// The cell of a member that isn't told by where a walker stands.
+    pub const NOWHERE: u16 = u16::MAX;
+
+    /// The directions of a shortest walk from the entry to a member.
+    pub fn walk_to(&self, member: usize) -> Vec<Dir> {
+        let mut dirs = Vec::new();
+        let mut at = member;
+        while self.members[at].distance > 0 {
+            dirs.push(self.members[at].dir);
+            at = usize::from(self.members[at].parent);
+        }
+        dirs.reverse();
+        dirs
+    }
+
+    /// The member that stands on a cell, if any.
+    pub fn member_at(&self, cell: u16) -> Option<usize> {
+        let at = self.at_cell.get(usize::from(cell)).copied().unwrap_or(0);
+        usize::from(at).checked_sub(1)
+    }
+
+    fn begin(&mut self, area: usize) {
+        for member in &self.members {
+            if let Some(at) = self.at_cell.get_mut(usize::from(member.cell)) {
+                *at = 0;
+            }
+        }
+        self.at_cell.resize(area, 0);
+        self.members.clear();
+        self.departures.clear();
+    }
+
+    fn add(&mut self, member: Member) {
+        if member.cell != Roam::NOWHERE {
+            self.at_cell[usize::from(member.cell)] = self.members.len() as u16 + 1;
+        }
+        self.members.push(member);
+    }
+}
+
+const ENTRY: Member = Member {
+    cell: Roam::NOWHERE,
+    distance: 0,
+    parent: 0,
+    dir: Dir::N,
+};
+
+impl Rules {
+    /// Fills `out` with the roam of a position. For several walkers, and under Drag, the position itself is its roam.
+    pub fn roam(&self, s: &mut Scratch, from: &[u64], out: &mut Roam) {
+        out.begin(self.tables.size.area());
+        let walker = match self.tables.walkers[..] {
+            [walker] if self.tables.control == Control::Steer => walker,
+            _ => {
+                out.add(ENTRY);
+                self.load(s, from);
+                self.each_candidate(s, |step| out.departures.push(Departure { member: 0, step }));
+                return;
+            }
+        };
+        let field = self.layout.bodies[usize::from(walker)];
+        let cell = self.tables.places[field.read(from).min(self.tables.places.len() - 1)];
+        out.add(Member { cell, ..ENTRY });
+        self.roam_by_trying(s, from, field, out);
+    }
+
+    /// The position of a member: `from` is any position of the same roam.
+    pub fn member_position(&self, from: &[u64], member: &Member, out: &mut [u64]) {
+        out.copy_from_slice(from);
+        if member.cell == Roam::NOWHERE {
+            return;
+        }
+        if let [walker] = self.tables.walkers[..] {
+            let place = self.tables.place_of[usize::from(member.cell)];
+            self.layout.bodies[usize::from(walker)].write(out, usize::from(place));
+        }
+    }
+
+    /// The position that names a roam: the one with the least walker cell. `from` is any position of the roam.
+    pub fn representative(&self, from: &[u64], roam: &Roam, out: &mut [u64]) {
+        match roam.members.iter().min_by_key(|member| member.cell) {
+            Some(member) => self.member_position(from, member, out),
+            None => out.copy_from_slice(from),
+        }
+    }
+
+    /// Tries every step of every member, forth and back.
+    fn roam_by_trying(&self, s: &mut Scratch, from: &[u64], field: Field, out: &mut Roam) {
+        let [mut here, mut there, mut back] = std::mem::take(&mut s.words);
+        let mut at = 0;
+        while at < out.members.len() {
+            let member = out.members[at];
+            self.member_position(from, &member, &mut here);
+            for dir in Dir::ALL {
+                let step = Rules::steer_step(dir);
+                if self.step_into(s, &here, step, &mut there).is_none() {
+                    continue;
+                }
+                if self.links(s, &here, &there, &mut back, field, dir) {
+                    let place = field.read(&there).min(self.tables.places.len() - 1);
+                    let cell = self.tables.places[place];
+                    if out.member_at(cell).is_none() {
+                        out.add(Member {
+                            cell,
+                            distance: member.distance + 1,
+                            parent: at as u16,
+                            dir,
+                        });
+                    }
+                } else {
+                    let member = at as u16;
+                    out.departures.push(Departure { member, step });
+                }
+            }
+            at += 1;
+        }
+        s.words = [here, there, back];
+    }
+
+    /// Whether two positions, the second a step in `dir` from the first, differ only in the walker and the step is undone at once.
+    fn links(
+        &self,
+        s: &mut Scratch,
+        here: &[u64],
+        there: &[u64],
+        back: &mut [u64],
+        field: Field,
+        dir: Dir,
+    ) -> bool {
+        let walker_bits = |word: usize| {
+            if word == field.word as usize {
+                field.mask << field.shift
+            } else {
+                0
+            }
+        };
+        let same_rest = here
+            .iter()
+            .zip(there)
+            .enumerate()
+            .all(|(word, (a, b))| (a ^ b) & !walker_bits(word) == 0);
+        let first = dir.opposite();
+        same_rest
+            && std::iter::once(first)
+                .chain(Dir::ALL.into_iter().filter(|&dir| dir != first))
+                .any(|dir| {
+                    self.step_into(s, there, Rules::steer_step(dir), back)
+                        .is_some()
+                        && *back == *here
+                })
+    }
+
+    /// The cells that the walker of a position can reach by steps that are undone at once and change nothing but where it
+    /// stands (its roam), in reading order. Only its own cells with several walkers; empty under Drag.
+    pub fn reach(&self, position: &super::Position) -> Vec<Cell> {
+        let mut scratch = self.scratch();
+        let mut roam = Roam::default();
+        self.roam(&mut scratch, &position.0, &mut roam);
+        let mut cells: Vec<u16> = match self.tables.walkers.len() {
+            1 => roam.members.iter().map(|member| member.cell).collect(),
+            _ => {
+                self.load(&mut scratch, &position.0);
+                let walkers = self.tables.walkers.iter();
+                walkers.map(|&slot| scratch.at[usize::from(slot)]).collect()
+            }
+        };
+        cells.sort_unstable();
+        cells
+            .iter()
+            .filter(|&&cell| usize::from(cell) < self.tables.size.area())
+            .map(|&cell| self.tables.size.cell(usize::from(cell)))
+            .collect()
+    }
+}
