@@ -66,6 +66,7 @@ impl Desk {
         Panel::bottom("trail").show(ui, |ui| trail::show(ui, state, pictures, actions));
         egui::CentralPanel::no_frame().show(ui, |ui| {
             let place = board::show(ui, state, pictures, actions);
+            place.log_when_changed(ui.ctx());
             state.shown = place.view();
         });
     }

@@ -101,6 +101,25 @@ impl Place {
         (first.y..=last.y).flat_map(move |y| (first.x..=last.x).map(move |x| Cell::new(x, y)))
     }
 
+    /// Logs where the board lies, in pixels of the window, whenever that changes; for tests that drive the real window.
+    pub fn log_when_changed(&self, ctx: &egui::Context) {
+        if !log::log_enabled!(target: "foldwright::geometry", log::Level::Debug) {
+            return;
+        }
+        let scale = ctx.pixels_per_point();
+        let text = format!(
+            "board origin {:.0} {:.0} cell {:.0}",
+            self.origin.x * scale,
+            self.origin.y * scale,
+            self.cell_points * scale
+        );
+        let last = egui::Id::new("logged-board-place");
+        if ctx.data(|data| data.get_temp::<String>(last)).as_ref() != Some(&text) {
+            log::debug!(target: "foldwright::geometry", "{text}");
+            ctx.data_mut(|data| data.insert_temp(last, text));
+        }
+    }
+
     /// The view when the scale is multiplied by `factor` and the level stays put under `point`.
     pub fn zoomed_about(&self, point: Pos2, factor: f32) -> BoardView {
         let limits = crate::desk::execute::CELL_POINTS;
