@@ -80,17 +80,10 @@ impl Level {
 
 /// The first ground without any trait.
 fn plain_ground(mechanics: &Mechanics) -> Option<GroundIx> {
-    let plain = |kind: &super::kinds::GroundKind| {
-        let bare = super::kinds::GroundKind {
-            look: kind.look.clone(),
-            ..super::kinds::GroundKind::plain(kind.id.clone(), kind.label.clone())
-        };
-        *kind == bare
-    };
     mechanics
         .grounds
         .iter()
-        .position(plain)
+        .position(super::kinds::GroundKind::is_plain)
         .map(|at| GroundIx(at as u16))
 }
 

@@ -257,6 +257,15 @@ impl GroundKind {
         }
     }
 
+    /// Whether it has no trait.
+    pub fn is_plain(&self) -> bool {
+        let bare = GroundKind {
+            look: self.look.clone(),
+            ..GroundKind::plain(self.id.clone(), self.label.clone())
+        };
+        *self == bare
+    }
+
     /// Whether nothing can ever enter.
     pub fn closed_to_all(&self) -> bool {
         self.closed_to.contains(&Role::Walker) && self.closed_to.contains(&Role::Cargo)
@@ -361,7 +370,7 @@ pub enum Clause {
     GemsTaken,
 }
 
-/// Which character stands for which kind in the rows of the file. Kinds without one get one when the pack is saved.
+/// Which character stands for which kind in the rows of the file. Kinds on a board without one get one when the pack is saved.
 #[derive(Clone, Debug, Default, PartialEq, Eq, Hash)]
 pub struct Legend {
     /// For `ground` rows.

@@ -5,7 +5,7 @@ use super::kinds::{BodyIx, Clause, GroundIx, ItemIx, Mechanics};
 use super::route::Route;
 use std::sync::Arc;
 
-/// A body of two or more cells, under control Drag.
+/// A body of several cells, under control Drag. One of a single cell may be kept here too.
 #[derive(Clone, Debug, PartialEq, Eq, Hash)]
 pub struct Block {
     /// Its kind.
@@ -38,7 +38,7 @@ pub struct Level {
     pub bodies: Vec<Option<BodyIx>>,
     /// Item on each cell.
     pub items: Vec<Option<ItemIx>>,
-    /// Bodies of two or more cells; never overlap each other or `bodies`.
+    /// Bodies listed as blocks, of one or more cells; never overlap each other or `bodies`.
     pub blocks: Vec<Block>,
     /// Replaces the pack's objective.
     pub objective: Option<Vec<Clause>>,
