@@ -149,8 +149,12 @@ impl World {
             Act::Drag(cell, dir) => Some(turn.drag(cell, dir)?),
         };
         let (position, touched, places) = turn.end();
+        let cargo_moved = from.bodies.iter().zip(&places).any(|(body, place)| {
+            self.mechanics.body(body.kind).role == Role::Cargo
+                && place.as_ref() != Some(&body.cells)
+        });
         (position != *from).then(|| Stepped {
-            pushed: self.cargo(&position) != self.cargo(from),
+            pushed: cargo_moved,
             touched,
             dragged: dragged.and_then(|body| places[body].clone()),
             position,
@@ -206,11 +210,6 @@ impl World {
     fn ground(&self, position: &Position, cell: Cell) -> &GroundKind {
         self.mechanics
             .ground(position.ground[self.size.index(cell)])
-    }
-
-    fn cargo<'a>(&self, position: &'a Position) -> Vec<&'a Body> {
-        let is_cargo = |body: &&Body| self.mechanics.body(body.kind).role == Role::Cargo;
-        position.bodies.iter().filter(is_cargo).collect()
     }
 }
 
