@@ -18,7 +18,8 @@ pub struct Member {
     pub dir: Dir,
 }
 
-/// A step from a member that isn't one of the roam's own. It may change nothing; it may also lead, one way, to another member.
+/// A step from a member that isn't one of the roam's own. It may change nothing; it may also lead, one way, to another member,
+/// or to a finished position, which is never undone.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
 pub struct Departure {
     /// Index of the member.
@@ -96,20 +97,29 @@ const ENTRY: Member = Member {
 
 impl Rules {
     /// Fills `out` with the roam of a position. For several walkers, and under Drag, the position itself is its roam.
+    /// So is a finished position, and no step departs from it; the roams of others hold no finished position.
     pub fn roam(&self, s: &mut Scratch, from: &[u64], out: &mut Roam) {
         out.begin(self.tables.size.area());
+        let finished = self.finished_in(s, from);
         let walker = match self.tables.walkers[..] {
             [walker] if self.tables.control == Control::Steer => walker,
             _ => {
                 out.add(ENTRY);
-                self.load(s, from);
-                self.each_candidate(s, |step| out.departures.push(Departure { member: 0, step }));
+                if !finished {
+                    self.load(s, from);
+                    self.each_candidate(s, |step| {
+                        out.departures.push(Departure { member: 0, step })
+                    });
+                }
                 return;
             }
         };
         let field = self.layout.bodies[usize::from(walker)];
         let cell = self.tables.places[field.read(from).min(self.tables.places.len() - 1)];
         out.add(Member { cell, ..ENTRY });
+        if finished {
+            return;
+        }
         self.roam_by_trying(s, from, field, out);
     }
 
@@ -142,10 +152,10 @@ impl Rules {
             self.member_position(from, &member, &mut here);
             for dir in Dir::ALL {
                 let step = Rules::steer_step(dir);
-                if self.step_into(s, &here, step, &mut there).is_none() {
+                let Some(info) = self.step_into(s, &here, step, &mut there) else {
                     continue;
-                }
-                if self.links(s, &here, &there, &mut back, field, dir) {
+                };
+                if !info.finished && self.links(s, &here, &there, &mut back, field, dir) {
                     let place = field.read(&there).min(self.tables.places.len() - 1);
                     let cell = self.tables.places[place];
                     if out.member_at(cell).is_none() {
