@@ -22,6 +22,8 @@ mod replay;
 mod roam;
 mod state;
 mod tables;
+#[cfg(test)]
+mod tests;
 
 pub use roam::{Departure, Member, Roam};
 pub use state::Scratch;
