@@ -4,9 +4,10 @@ use super::tables::{NONE, Tables, flag};
 use super::{Rules, Scratch};
 use crate::level::{BodyIx, Clause, Level, Mechanics};
 
-/// One condition of the objective, ready to be judged.
-#[derive(Clone, Debug)]
-pub(crate) enum Condition {
+/// One condition of the objective, ready to be judged. Slots and items are counted as in [`Rules::body_traits`] and
+/// [`Rules::items`]; a condition names all slots of a class or none.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub enum Condition {
     /// Every home cell holds a body that it accepts.
     HomesFilled,
     /// The bodies in these slots that are on the board stand wholly on homes that accept them.

@@ -15,6 +15,7 @@
 //! - Under Drag a slide of a single cell asks nothing of `axis`: it goes on in the direction of the step.
 //! - `HomesFilled` and `WalkersOut` hold where there is no home, or no walker.
 
+mod facts;
 mod goal;
 mod moving;
 mod packing;
@@ -25,13 +26,14 @@ mod tables;
 #[cfg(test)]
 mod tests;
 
+pub use facts::{BodyTraits, GroundTraits, ItemTraits};
+pub use goal::Condition;
 pub use roam::{Departure, Member, Roam};
 pub use state::Scratch;
 
 use crate::level::{
     BodyIx, Cell, Control, Dir, GroundIx, ItemIx, Level, Mechanics, Problem, Severity,
 };
-use goal::Condition;
 use packing::Layout;
 use tables::{NONE, Tables};
 
