@@ -1,7 +1,7 @@
 //! Everything that a user can do, as one enum. Panels only push actions; [`super::state::State::execute`] alone carries them out.
 
 use super::state::{BoardView, Brush, Dialog, ShowFlag, ThemeChoice, Tool, UnsavedChoice};
-use crate::level::Cell;
+use crate::level::{Cell, Turn};
 use crate::study::Prove;
 use std::path::PathBuf;
 
@@ -20,6 +20,8 @@ pub enum Action {
     Open,
     /// Open this pack; asks about unsaved changes first.
     OpenPath(PathBuf),
+    /// Open this pack; the question about unsaved changes has been settled.
+    OpenNow(PathBuf),
     /// Save where the pack came from, or ask where.
     Save,
     /// Ask where to save.
@@ -28,7 +30,7 @@ pub enum Action {
     SaveTo(PathBuf),
     /// Save over a file that changed on disk since it was read.
     Overwrite(PathBuf),
-    /// Read the file again and drop what is on the desk (can be undone).
+    /// Read the file again in place of what is on the desk. Undo brings that back.
     Reload,
     /// Take this pack from an autosave left behind by a session that did not end well.
     Recover,
@@ -129,11 +131,17 @@ pub enum Action {
         /// Which part stays: 0 the left or top, 1 the middle, 2 the right or bottom; for columns and rows.
         anchor: (u8, u8),
     },
+    /// Turn or mirror the level on the board.
+    TurnLevel(Turn),
+    /// Cut the level on the board down to what is open, with one cell around it.
+    CropLevel,
+    /// Close the border of the level on the board.
+    SurroundLevel,
     /// Note the route on the trail as the one that the designer means.
     MeanThisRoute,
     /// Note the proved figures of the level on the board as its approved par.
     ApprovePar,
-    /// Ask again, with what is remembered about this level put aside by nothing but a new edit.
+    /// Ask the worker about the level on the board again, as after a stop or with another budget.
     StudyAgain,
     /// Stop the search; what is known stays.
     StopSearch,
@@ -176,8 +184,10 @@ pub enum Action {
     ShowDialog(Dialog),
     /// The fields of the open dialog changed.
     DialogChanged(Dialog),
-    /// Close the open dialog without doing anything.
+    /// Close the open dialog and give up what waited for it.
     CloseDialog,
+    /// Close the open dialog; what waited for it goes on.
+    PutDialogAway,
     /// Show the list of keys.
     ShowKeys,
     /// Say what this program is.

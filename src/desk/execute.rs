@@ -16,6 +16,7 @@ impl State {
             | Action::CreatePack { .. }
             | Action::Open
             | Action::OpenPath(_)
+            | Action::OpenNow(_)
             | Action::Save
             | Action::SaveAs
             | Action::SaveTo(_)
@@ -48,6 +49,9 @@ impl State {
             | Action::MoveLevel { .. }
             | Action::AskResize
             | Action::ResizeLevel { .. }
+            | Action::TurnLevel(_)
+            | Action::CropLevel
+            | Action::SurroundLevel
             | Action::MeanThisRoute
             | Action::ApprovePar
             | Action::StudyAgain
@@ -79,6 +83,7 @@ impl State {
             Action::OpenPath(ref path) if !self.asks_first(&action) => {
                 self.effects.push(Effect::Read(path.clone()));
             }
+            Action::OpenNow(path) => self.effects.push(Effect::Read(path)),
             Action::CreatePack { ref name } if !self.asks_first(&action) => {
                 self.create_pack(name.clone());
             }
@@ -87,7 +92,10 @@ impl State {
                 Some(path) => self.write(path, false),
                 None => self.effects.push(Effect::PickToSave),
             },
-            Action::SaveAs => self.effects.push(Effect::PickToSave),
+            Action::SaveAs => {
+                self.dialog = None;
+                self.effects.push(Effect::PickToSave);
+            }
             Action::SaveTo(path) => self.write(path, false),
             Action::Overwrite(path) => self.write(path, true),
             Action::Reload => {
@@ -240,6 +248,9 @@ impl State {
                 height,
                 anchor,
             } => self.resize_level(width, height, anchor),
+            Action::TurnLevel(turn) => self.turn_level(turn),
+            Action::CropLevel => self.crop_level(),
+            Action::SurroundLevel => self.surround_level(),
             Action::MeanThisRoute => self.mean_this_route(),
             Action::ApprovePar => self.approve_par(),
             Action::StopSearch => {
@@ -263,12 +274,14 @@ impl State {
             }
             Action::SetProve(prove) => {
                 self.settings.prove = prove;
+                self.effects.push(Effect::KeepSettings);
                 self.level_changed(true);
                 self.ask_shelf();
             }
             Action::SetBudget { seconds, mebibytes } => {
                 self.settings.seconds = seconds.clamp(0.1, 86_400.0);
                 self.settings.mebibytes = mebibytes.clamp(16, 1 << 20);
+                self.effects.push(Effect::KeepSettings);
                 self.ask_budget();
                 self.level_changed(true);
             }
@@ -307,7 +320,10 @@ impl State {
             Action::Fit => self.view = None,
             Action::MarkCells(cells) => self.marked = cells,
             Action::Toggle(flag) => self.show.toggle(flag),
-            Action::SetTheme(theme) => self.settings.theme = theme,
+            Action::SetTheme(theme) => {
+                self.settings.theme = theme;
+                self.effects.push(Effect::KeepSettings);
+            }
             Action::ShowDialog(dialog) | Action::DialogChanged(dialog) => {
                 self.dialog = Some(dialog);
             }
@@ -315,6 +331,7 @@ impl State {
                 self.dialog = None;
                 self.after_unsaved = None;
             }
+            Action::PutDialogAway => self.dialog = None,
             Action::ShowKeys => self.dialog = Some(Dialog::Keys),
             Action::ShowAbout => self.dialog = Some(Dialog::About),
             _ => {}

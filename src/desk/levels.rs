@@ -1,7 +1,7 @@
 //! The levels of the pack as a list: adding, copying, renaming, moving, resizing.
 
 use super::state::{Brush, State};
-use crate::level::{Cell, GroundIx, Level, Mechanics, Pack, Size};
+use crate::level::{GroundIx, Level, Mechanics, Pack, Size, Turn};
 use std::sync::Arc;
 
 /// Columns and rows of a level that nobody chose a size for.
@@ -37,45 +37,9 @@ pub(super) fn ensure_a_level(pack: &mut Pack) {
     }
 }
 
-/// The level with another size. `anchor` says which part stays, for columns and rows: 0 the left or top, 1 the middle, 2 the
-/// right or bottom. New cells get the closed ground, else plain ground. Blocks that don't fit are taken away whole.
-pub fn resized(mechanics: &Mechanics, level: &Level, size: Size, anchor: (u8, u8)) -> Level {
-    let shift = |old: usize, new: usize, anchor: u8| -> i32 {
-        (new as i32 - old as i32) * i32::from(anchor.min(2)) / 2
-    };
-    let dx = shift(level.size.width(), size.width(), anchor.0);
-    let dy = shift(level.size.height(), size.height(), anchor.1);
-    let moved = |cell: Cell| -> Option<Cell> {
-        let (x, y) = (i32::from(cell.x) + dx, i32::from(cell.y) + dy);
-        let fits = (0..size.width() as i32).contains(&x) && (0..size.height() as i32).contains(&y);
-        fits.then(|| Cell::new(x as u8, y as u8))
-    };
-    let outside = mechanics.closed_ground().unwrap_or(GroundIx(0));
-    let mut new = Level {
-        objective: level.objective.clone(),
-        notes: level.notes.clone(),
-        ..Level::filled(level.name.clone(), size, outside)
-    };
-    for cell in level.size.cells() {
-        if let Some(to) = moved(cell) {
-            let (from, to) = (level.size.index(cell), size.index(to));
-            new.ground[to] = level.ground[from];
-            new.bodies[to] = level.bodies[from];
-            new.items[to] = level.items[from];
-        }
-    }
-    new.blocks = level
-        .blocks
-        .iter()
-        .filter_map(|block| {
-            let cells: Option<Vec<Cell>> = block.cells.iter().map(|&cell| moved(cell)).collect();
-            cells.map(|cells| crate::level::Block {
-                kind: block.kind,
-                cells,
-            })
-        })
-        .collect();
-    new
+/// By how many cells the content moves when a side changes from `old` to `new` cells; see [`super::action::Action::ResizeLevel`].
+fn shift(old: usize, new: usize, anchor: u8) -> i32 {
+    (new as i32 - old as i32) * i32::from(anchor.min(2)) / 2
 }
 
 impl State {
@@ -208,11 +172,54 @@ impl State {
             self.said = "a side of a level has 1 to 64 cells".to_owned();
             return;
         };
+        let old = self.current().size;
+        let dx = shift(old.width(), width, anchor.0);
+        let dy = shift(old.height(), height, anchor.1);
+        let fill = self.mechanics().closed_ground().unwrap_or(GroundIx(0));
+        let level = self.current().resized(size, dx, dy, fill);
+        self.replace_level(format!("resized to {width} by {height}"), level);
+    }
+
+    fn replace_level(&mut self, label: impl Into<String>, level: Level) {
         let at = self.level;
-        let level = Arc::new(resized(self.mechanics(), self.current(), size, anchor));
-        self.edit_pack(format!("resized to {width} by {height}"), |pack| {
-            pack.levels[at] = level;
-        });
+        self.edit_pack(label, |pack| pack.levels[at] = Arc::new(level));
+    }
+
+    /// Turns or mirrors the level on the board.
+    pub(super) fn turn_level(&mut self, turn: Turn) {
+        let (level, left_alone) = self.current().turned(self.mechanics(), turn);
+        let how = match turn {
+            Turn::Right => "turned right",
+            Turn::Left => "turned left",
+            Turn::Half => "turned half around",
+            Turn::MirrorRow => "mirrored left and right",
+            Turn::MirrorColumn => "mirrored top and bottom",
+        };
+        self.playback = None;
+        self.replace_level(how, level);
+        if !left_alone.is_empty() {
+            self.said = format!(
+                "{how}; {} cells have a one-way ground without a turned twin in the pack and stayed as they were",
+                left_alone.len()
+            );
+        }
+    }
+
+    /// Cuts the level on the board down to what is open.
+    pub(super) fn crop_level(&mut self) {
+        let level = self.current().cropped(self.mechanics());
+        self.replace_level("cropped", level);
+    }
+
+    /// Closes the border of the level on the board.
+    pub(super) fn surround_level(&mut self) {
+        match self.mechanics().closed_ground() {
+            Some(closed) => {
+                let level = self.current().surrounded(self.mechanics(), closed);
+                self.replace_level("closed the border", level);
+            }
+            None => self.said = "the pack has no ground that is closed to everything".to_owned(),
+        }
     }
 
     /// Notes the route on the trail as the one that the designer means.

@@ -275,6 +275,10 @@ pub enum Effect {
     ReadRecovery,
     /// Delete the autosave that was left behind.
     DropRecovery,
+    /// Delete the autosave of this session: all is on disk.
+    ForgetAutosave,
+    /// Keep the settings for the next session.
+    KeepSettings,
     /// Close the window.
     Close,
 }
@@ -286,8 +290,6 @@ pub struct Saved {
     pub pack: Pack,
     /// The fingerprint of the file then; none if it has no file.
     pub print: Option<super::files::FilePrint>,
-    /// When, as seconds of the window's clock.
-    pub at_secs: f64,
 }
 
 /// All that the desk knows.
@@ -298,6 +300,8 @@ pub struct State {
     pub path: Option<PathBuf>,
     /// What is on disk.
     pub saved: Saved,
+    /// Comments before the pack in its file, kept when it is saved.
+    pub preamble: String,
     /// Index of the level on the board. Always a level of the pack.
     pub level: usize,
     /// Counts the edits and changes of level.
@@ -359,8 +363,8 @@ impl State {
             saved: Saved {
                 pack: pack.clone(),
                 print: None,
-                at_secs: 0.0,
             },
+            preamble: String::new(),
             pack,
             path,
             level: 0,
@@ -409,6 +413,17 @@ impl State {
     /// Whether there are changes that are not on disk.
     pub fn is_dirty(&self) -> bool {
         self.pack != self.saved.pack
+    }
+
+    /// Whether the brush paints a kind that the pack does not have.
+    pub(super) fn brush_is_gone(&self) -> bool {
+        let mechanics = self.mechanics();
+        match self.brush {
+            Brush::Ground(ix) => usize::from(ix.0) >= mechanics.grounds.len(),
+            Brush::Body(ix) => usize::from(ix.0) >= mechanics.bodies.len(),
+            Brush::Item(ix) => usize::from(ix.0) >= mechanics.items.len(),
+            Brush::Clear => false,
+        }
     }
 
     /// Whether something stamped with `revision` is about the level as it is now.

@@ -15,6 +15,14 @@ pub struct Place {
     pub origin: Pos2,
     /// Side of a cell, in points; a whole number of pixels.
     pub cell_points: f32,
+    /// The side that was asked for, before it was cut to whole pixels: zooming in small steps adds up in it.
+    asked_points: f32,
+    pixels_per_point: f32,
+}
+
+/// The side of a cell in whole pixels, at least one.
+fn snapped(points: f32, pixels_per_point: f32) -> f32 {
+    (points * pixels_per_point + 0.001).floor().max(1.0) / pixels_per_point
 }
 
 impl Place {
@@ -33,9 +41,7 @@ impl Place {
     /// The place that a view asks for.
     pub fn of(view: BoardView, size: Size, panel: Rect, pixels_per_point: f32) -> Place {
         let to_pixel = |points: f32| (points * pixels_per_point).round() / pixels_per_point;
-        let least = 1.0 / pixels_per_point;
-        let cell_points =
-            ((view.cell_points * pixels_per_point + 0.001).floor() / pixels_per_point).max(least);
+        let cell_points = snapped(view.cell_points, pixels_per_point);
         let centre = vec2(view.centre.0, view.centre.1) * cell_points;
         let corner = panel.center() - centre;
         Place {
@@ -43,6 +49,8 @@ impl Place {
             panel,
             origin: pos2(to_pixel(corner.x), to_pixel(corner.y)),
             cell_points,
+            asked_points: view.cell_points,
+            pixels_per_point,
         }
     }
 
@@ -50,8 +58,21 @@ impl Place {
     pub fn view(&self) -> BoardView {
         let centre = (self.panel.center() - self.origin) / self.cell_points;
         BoardView {
-            cell_points: self.cell_points,
+            cell_points: self.asked_points,
             centre: (centre.x, centre.y),
+        }
+    }
+
+    /// The view when the board is moved by this much.
+    pub fn panned(&self, by: Vec2) -> BoardView {
+        let centre = (self.panel.center() - self.origin - by) / self.cell_points;
+        let within = |at: f32, side: usize| at.clamp(0.0, side as f32);
+        BoardView {
+            cell_points: self.asked_points,
+            centre: (
+                within(centre.x, self.size.width()),
+                within(centre.y, self.size.height()),
+            ),
         }
     }
 
@@ -123,12 +144,80 @@ impl Place {
     /// The view when the scale is multiplied by `factor` and the level stays put under `point`.
     pub fn zoomed_about(&self, point: Pos2, factor: f32) -> BoardView {
         let limits = crate::desk::execute::CELL_POINTS;
-        let cell_points = (self.cell_points * factor).clamp(*limits.start(), *limits.end());
+        let asked = (self.asked_points * factor).clamp(*limits.start(), *limits.end());
         let under = (point - self.origin) / self.cell_points;
-        let centre = under + (self.panel.center() - point) / cell_points;
+        let side = snapped(asked, self.pixels_per_point);
+        let centre = under + (self.panel.center() - point) / side;
         BoardView {
-            cell_points,
+            cell_points: asked,
             centre: (centre.x, centre.y),
         }
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    fn place(view: BoardView) -> Place {
+        let size = Size::new(20, 10).expect("a size");
+        let panel = Rect::from_min_size(pos2(100.0, 50.0), vec2(800.0, 500.0));
+        Place::of(view, size, panel, 1.0)
+    }
+
+    #[test]
+    fn what_is_under_the_pointer_stays_under_it_when_zooming() {
+        let before = place(BoardView {
+            cell_points: 30.0,
+            centre: (10.0, 5.0),
+        });
+        for factor in [0.7, 1.01, 1.3, 2.0] {
+            let pointer = pos2(333.0, 222.0);
+            let after = place(before.zoomed_about(pointer, factor));
+            let under = |place: &Place| (pointer - place.origin) / place.cell_points;
+            let moved = (under(&before) - under(&after)).length() * after.cell_points;
+            // The origin is on whole pixels.
+            assert!(moved <= 1.0, "{factor}: {moved}");
+        }
+    }
+
+    #[test]
+    fn small_steps_of_zooming_add_up() {
+        let mut now = place(BoardView {
+            cell_points: 30.0,
+            centre: (10.0, 5.0),
+        });
+        for _ in 0..100 {
+            now = place(now.zoomed_about(pos2(500.0, 300.0), 1.01));
+        }
+        assert!((now.cell_points - 30.0 * 1.01_f32.powi(100)).abs() < 1.5);
+    }
+
+    #[test]
+    fn cells_and_points_agree() {
+        let size = Size::new(64, 64).expect("a size");
+        let panel = Rect::from_min_size(pos2(0.0, 0.0), vec2(640.0, 480.0));
+        let place = Place::fit(size, panel, 1.5);
+        for cell in size.cells() {
+            assert_eq!(place.cell_at(place.rect(cell).center()), Some(cell));
+            assert!(panel.contains_rect(place.rect(cell)));
+        }
+        assert_eq!(place.cells_in_view().count(), 64 * 64);
+        assert_eq!(place.cell_at(pos2(1.0, 1.0)), None);
+    }
+
+    #[test]
+    fn only_cells_in_view_are_named() {
+        let zoomed = place(BoardView {
+            cell_points: 100.0,
+            centre: (10.0, 5.0),
+        });
+        let seen = zoomed.cells_in_view().count();
+        assert!((40..=60).contains(&seen), "{seen}");
+        let away = place(BoardView {
+            cell_points: 30.0,
+            centre: (500.0, 5.0),
+        });
+        assert_eq!(away.cells_in_view().count(), 0);
     }
 }
