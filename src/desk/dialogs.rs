@@ -5,7 +5,9 @@ use super::keys::{COMMANDS, Menu, OTHER_KEYS};
 use super::state::{Dialog, PathPurpose, State, UnsavedChoice};
 use super::theme::Theme;
 use crate::level::MAX_SIDE;
-use egui::{Align, Button, DragValue, Grid, Id, Key, Layout, Modal, RichText, ScrollArea, TextEdit, Ui};
+use egui::{
+    Align, Button, DragValue, Grid, Id, Key, Layout, Modal, RichText, ScrollArea, TextEdit, Ui,
+};
 use std::path::PathBuf;
 
 /// Draws the dialog that is open, if one is, and pushes what the user did.
@@ -14,7 +16,7 @@ pub fn show(ui: &mut Ui, state: &State, actions: &mut Vec<Action>) {
         return;
     };
     let mut dialog = open.clone();
-    let modal = Modal::new(Id::new("dialog")).show(ui.ctx(), |ui| {
+    let modal = Modal::new(Id::unique("dialog")).show(ui.ctx(), |ui| {
         let most = ui.ctx().content_rect().width() - 80.0;
         ui.set_width(width_of(open).min(most));
         body(ui, state, &mut dialog, actions);
@@ -42,7 +44,9 @@ fn body(ui: &mut Ui, state: &State, dialog: &mut Dialog, actions: &mut Vec<Actio
     match dialog {
         Dialog::NewPack { name } => {
             heading(ui, "New pack");
-            ui.label("It takes over the kinds of the pack on the desk and begins with one empty level.");
+            ui.label(
+                "It takes over the kinds of the pack on the desk and begins with one empty level.",
+            );
             let ready = named(ui, "Name", name);
             let action = Action::CreatePack { name: name.clone() };
             decide(ui, "Begin", ready, action, actions);
@@ -65,12 +69,24 @@ fn body(ui: &mut Ui, state: &State, dialog: &mut Dialog, actions: &mut Vec<Actio
         Dialog::RenameLevel { level, name } => {
             heading(ui, "Rename level");
             let ready = named(ui, "Name", name);
-            decide(ui, "Rename", ready, Action::RenameLevel(*level, name.clone()), actions);
+            decide(
+                ui,
+                "Rename",
+                ready,
+                Action::RenameLevel(*level, name.clone()),
+                actions,
+            );
         }
         Dialog::RenamePack { name } => {
             heading(ui, "Rename pack");
             let ready = named(ui, "Name", name);
-            decide(ui, "Rename", ready, Action::RenamePack(name.clone()), actions);
+            decide(
+                ui,
+                "Rename",
+                ready,
+                Action::RenamePack(name.clone()),
+                actions,
+            );
         }
         Dialog::Resize {
             width,
@@ -110,10 +126,12 @@ fn sides(ui: &mut Ui, width: &mut usize, height: &mut usize) {
     let range = 1..=usize::from(MAX_SIDE);
     ui.horizontal(|ui| {
         let label = ui.label("Columns");
-        ui.add(DragValue::new(width).range(range.clone())).labelled_by(label.id);
+        ui.add(DragValue::new(width).range(range.clone()))
+            .labelled_by(label.id);
         ui.add_space(12.0);
         let label = ui.label("Rows");
-        ui.add(DragValue::new(height).range(range)).labelled_by(label.id);
+        ui.add(DragValue::new(height).range(range))
+            .labelled_by(label.id);
     });
 }
 
@@ -221,7 +239,10 @@ fn path(ui: &mut Ui, purpose: PathPurpose, text: &mut String, actions: &mut Vec<
 
 fn unsaved(ui: &mut Ui, state: &State, actions: &mut Vec<Action>) {
     heading(ui, "Save the changes?");
-    ui.label(format!("{} has changes that are not on disk.", state.pack.name));
+    ui.label(format!(
+        "{} has changes that are not on disk.",
+        state.pack.name
+    ));
     choose(
         ui,
         &[
@@ -305,23 +326,27 @@ fn keys(ui: &mut Ui, actions: &mut Vec<Action>) {
     heading(ui, "Keys");
     let height = (ui.ctx().content_rect().height() - 200.0).max(120.0);
     ScrollArea::vertical().max_height(height).show(ui, |ui| {
-        Grid::new("keys").num_columns(2).striped(true).spacing([24.0, 4.0]).show(ui, |ui| {
-            for (menu, title) in Menu::ALL {
-                let of_menu = COMMANDS.iter().filter(|command| command.menu == menu);
-                for command in of_menu {
-                    if let Some(key) = &command.key {
-                        ui.strong(ui.ctx().format_shortcut(key));
-                        ui.label(format!("{title}: {}", command.name.trim_end_matches('…')));
-                        ui.end_row();
+        Grid::new("keys")
+            .num_columns(2)
+            .striped(true)
+            .spacing([24.0, 4.0])
+            .show(ui, |ui| {
+                for (menu, title) in Menu::ALL {
+                    let of_menu = COMMANDS.iter().filter(|command| command.menu == menu);
+                    for command in of_menu {
+                        if let Some(key) = &command.key {
+                            ui.strong(ui.ctx().format_shortcut(key));
+                            ui.label(format!("{title}: {}", command.name.trim_end_matches('…')));
+                            ui.end_row();
+                        }
                     }
                 }
-            }
-            for (key, what) in OTHER_KEYS {
-                ui.strong(*key);
-                ui.label(*what);
-                ui.end_row();
-            }
-        });
+                for (key, what) in OTHER_KEYS {
+                    ui.strong(*key);
+                    ui.label(*what);
+                    ui.end_row();
+                }
+            });
     });
     choose(ui, &[("Close", Action::CloseDialog)], actions);
 }

@@ -165,7 +165,10 @@ impl State {
             Ok(read) => *read,
             Err(fault) => {
                 log::warn!(target: "foldwright::file", "refused {}", path.display());
-                self.say_fault("This pack can't be opened", format!("{}:{fault}", path.display()));
+                self.say_fault(
+                    "This pack can't be opened",
+                    format!("{}:{fault}", path.display()),
+                );
                 return;
             }
         };
@@ -179,7 +182,12 @@ impl State {
         if again && self.pack != read.pack {
             self.take_again(read.pack.clone());
         } else if !again {
-            self.put_on_desk(read.pack.clone(), Some(path.clone()), Some(print), String::new());
+            self.put_on_desk(
+                read.pack.clone(),
+                Some(path.clone()),
+                Some(print),
+                String::new(),
+            );
         }
         self.preamble = read.preamble.clone();
         self.note_on_disk(print);
@@ -241,7 +249,10 @@ impl State {
                 self.after_unsaved = None;
                 self.say_fault(
                     "The pack was not saved",
-                    format!("{}: {fault}\nWhat was there before is still there.", path.display()),
+                    format!(
+                        "{}: {fault}\nWhat was there before is still there.",
+                        path.display()
+                    ),
                 );
             }
         }

@@ -20,7 +20,10 @@ pub fn pick(purpose: PathPurpose, folder: Option<PathBuf>, name: String) -> File
     }
     let path = match purpose {
         PathPurpose::Open => dialog.set_title("Open a pack").pick_file(),
-        PathPurpose::Save => dialog.set_title("Save the pack").set_file_name(name).save_file(),
+        PathPurpose::Save => dialog
+            .set_title("Save the pack")
+            .set_file_name(name)
+            .save_file(),
     };
     let no_dialog = path.is_none() && since.elapsed() < FASTEST_CANCEL;
     FileNews::Picked {
@@ -69,5 +72,7 @@ pub fn look(path: PathBuf) -> FileNews {
 }
 
 fn look_at(path: &Path) -> Option<FilePrint> {
-    std::fs::read(path).ok().map(|content| FilePrint::of(&content))
+    std::fs::read(path)
+        .ok()
+        .map(|content| FilePrint::of(&content))
 }

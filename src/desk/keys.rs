@@ -130,7 +130,8 @@ pub static COMMANDS: &[Command] = &[
         .ctrl(Key::S)
         .below_a_line(),
     command(Menu::File, "Save as…", |_| Action::SaveAs).key(CTRL_SHIFT, Key::S),
-    command(Menu::File, "Read again from disk", |_| Action::Reload).can(|state| state.path.is_some()),
+    command(Menu::File, "Read again from disk", |_| Action::Reload)
+        .can(|state| state.path.is_some()),
     command(Menu::File, "Quit", |_| Action::Quit)
         .ctrl(Key::Q)
         .below_a_line(),
@@ -145,22 +146,30 @@ pub static COMMANDS: &[Command] = &[
         .plain(Key::D)
         .below_a_line()
         .ticked(|state| state.tool == Tool::Dot),
-    command(Menu::Edit, "Brush: line", |_| Action::ChooseTool(Tool::Line))
-        .plain(Key::L)
-        .ticked(|state| state.tool == Tool::Line),
+    command(Menu::Edit, "Brush: line", |_| {
+        Action::ChooseTool(Tool::Line)
+    })
+    .plain(Key::L)
+    .ticked(|state| state.tool == Tool::Line),
     command(Menu::Edit, "Brush: box", |_| Action::ChooseTool(Tool::Box))
         .plain(Key::B)
         .ticked(|state| state.tool == Tool::Box),
-    command(Menu::Edit, "Brush: flood", |_| Action::ChooseTool(Tool::Flood))
-        .plain(Key::F)
-        .ticked(|state| state.tool == Tool::Flood),
-    command(Menu::Edit, "Brush: pick", |_| Action::ChooseTool(Tool::Pick))
-        .plain(Key::I)
-        .ticked(|state| state.tool == Tool::Pick),
-    command(Menu::Edit, "Paint nothing", |_| Action::ChooseBrush(Brush::Clear))
-        .plain(Key::X)
-        .below_a_line()
-        .ticked(|state| state.brush == Brush::Clear),
+    command(Menu::Edit, "Brush: flood", |_| {
+        Action::ChooseTool(Tool::Flood)
+    })
+    .plain(Key::F)
+    .ticked(|state| state.tool == Tool::Flood),
+    command(Menu::Edit, "Brush: pick", |_| {
+        Action::ChooseTool(Tool::Pick)
+    })
+    .plain(Key::I)
+    .ticked(|state| state.tool == Tool::Pick),
+    command(Menu::Edit, "Paint nothing", |_| {
+        Action::ChooseBrush(Brush::Clear)
+    })
+    .plain(Key::X)
+    .below_a_line()
+    .ticked(|state| state.brush == Brush::Clear),
     command(Menu::View, "Zoom in", |_| Action::Zoom(1.25))
         .ctrl(Key::Plus)
         .or(Modifiers::COMMAND, Key::Equals),
@@ -170,32 +179,56 @@ pub static COMMANDS: &[Command] = &[
         .plain(Key::H)
         .below_a_line()
         .ticked(|state| state.show.heat),
-    command(Menu::View, "Idle tiles", |_| Action::Toggle(ShowFlag::IdleTiles))
-        .plain(Key::T)
-        .ticked(|state| state.show.idle_tiles),
-    command(Menu::View, "Fold reach", |_| Action::Toggle(ShowFlag::FoldReach))
-        .plain(Key::R)
-        .ticked(|state| state.show.fold_reach),
-    command(Menu::View, "Problems", |_| Action::Toggle(ShowFlag::Problems))
-        .plain(Key::M)
-        .ticked(|state| state.show.problems),
-    command(Menu::View, "Colours of the system", |_| Action::SetTheme(ThemeChoice::System))
-        .below_a_line()
-        .ticked(|state| state.settings.theme == ThemeChoice::System),
+    command(Menu::View, "Idle tiles", |_| {
+        Action::Toggle(ShowFlag::IdleTiles)
+    })
+    .plain(Key::T)
+    .ticked(|state| state.show.idle_tiles),
+    command(Menu::View, "Fold reach", |_| {
+        Action::Toggle(ShowFlag::FoldReach)
+    })
+    .plain(Key::R)
+    .ticked(|state| state.show.fold_reach),
+    command(Menu::View, "Problems", |_| {
+        Action::Toggle(ShowFlag::Problems)
+    })
+    .plain(Key::M)
+    .ticked(|state| state.show.problems),
+    command(Menu::View, "Colours of the system", |_| {
+        Action::SetTheme(ThemeChoice::System)
+    })
+    .below_a_line()
+    .ticked(|state| state.settings.theme == ThemeChoice::System),
     command(Menu::View, "Dark", |_| Action::SetTheme(ThemeChoice::Dark))
         .ticked(|state| state.settings.theme == ThemeChoice::Dark),
-    command(Menu::View, "Light", |_| Action::SetTheme(ThemeChoice::Light))
-        .ticked(|state| state.settings.theme == ThemeChoice::Light),
+    command(Menu::View, "Light", |_| {
+        Action::SetTheme(ThemeChoice::Light)
+    })
+    .ticked(|state| state.settings.theme == ThemeChoice::Light),
     command(Menu::Level, "New level…", |_| Action::NewLevel).key(CTRL_SHIFT, Key::N),
-    command(Menu::Level, "Duplicate", |state| Action::DuplicateLevel(state.level)).ctrl(Key::D),
-    command(Menu::Level, "Rename…", |state| Action::AskRename(state.level)).plain(Key::F2),
-    command(Menu::Level, "Delete", |state| Action::DeleteLevel(state.level)),
+    command(Menu::Level, "Duplicate", |state| {
+        Action::DuplicateLevel(state.level)
+    })
+    .ctrl(Key::D),
+    command(Menu::Level, "Rename…", |state| {
+        Action::AskRename(state.level)
+    })
+    .plain(Key::F2),
+    command(Menu::Level, "Delete", |state| {
+        Action::DeleteLevel(state.level)
+    }),
     command(Menu::Level, "Resize…", |_| Action::AskResize)
         .ctrl(Key::R)
         .below_a_line(),
-    command(Menu::Level, "Turn right", |_| Action::TurnLevel(Turn::Right)),
-    command(Menu::Level, "Mirror left and right", |_| Action::TurnLevel(Turn::MirrorRow)),
-    command(Menu::Level, "Mirror top and bottom", |_| Action::TurnLevel(Turn::MirrorColumn)),
+    command(Menu::Level, "Turn right", |_| {
+        Action::TurnLevel(Turn::Right)
+    }),
+    command(Menu::Level, "Mirror left and right", |_| {
+        Action::TurnLevel(Turn::MirrorRow)
+    }),
+    command(Menu::Level, "Mirror top and bottom", |_| {
+        Action::TurnLevel(Turn::MirrorColumn)
+    }),
     command(Menu::Level, "Crop to what is open", |_| Action::CropLevel),
     command(Menu::Level, "Close the border", |_| Action::SurroundLevel),
     command(Menu::Level, "Previous level", |_| Action::StepLevel(-1))
@@ -211,10 +244,12 @@ pub static COMMANDS: &[Command] = &[
     command(Menu::Level, "Move later", |state| move_by(state, 1))
         .ctrl(Key::PageDown)
         .can(|state| state.level + 1 < state.pack.levels.len()),
-    command(Menu::Level, "Play or pause the route", |_| Action::PlayPause)
-        .plain(Key::P)
-        .below_a_line()
-        .can(has_route),
+    command(Menu::Level, "Play or pause the route", |_| {
+        Action::PlayPause
+    })
+    .plain(Key::P)
+    .below_a_line()
+    .can(has_route),
     command(Menu::Level, "Step back", |_| Action::Back)
         .plain(Key::Comma)
         .can(has_route),
@@ -229,16 +264,25 @@ pub static COMMANDS: &[Command] = &[
         .can(has_route),
     command(Menu::Level, "Mean this route", |_| Action::MeanThisRoute).can(has_route),
     command(Menu::Pack, "Rename pack…", |_| Action::AskRenamePack),
-    command(Menu::Pack, "Prove the fewest steps", |_| Action::SetProve(Prove::Steps))
-        .below_a_line()
-        .ticked(|state| state.settings.prove == Prove::Steps),
-    command(Menu::Pack, "Prove the fewest pushes", |_| Action::SetProve(Prove::Pushes))
-        .ticked(|state| state.settings.prove == Prove::Pushes),
+    command(Menu::Pack, "Prove the fewest steps", |_| {
+        Action::SetProve(Prove::Steps)
+    })
+    .below_a_line()
+    .ticked(|state| state.settings.prove == Prove::Steps),
+    command(Menu::Pack, "Prove the fewest pushes", |_| {
+        Action::SetProve(Prove::Pushes)
+    })
+    .ticked(|state| state.settings.prove == Prove::Pushes),
     command(Menu::Pack, "Prove both", |_| Action::SetProve(Prove::Both))
         .ticked(|state| state.settings.prove == Prove::Both),
-    command(Menu::Pack, "Any route will do", |_| Action::SetProve(Prove::None))
-        .ticked(|state| state.settings.prove == Prove::None),
-    command(Menu::Pack, "Time and memory of a search…", |_| Action::AskBudget).below_a_line(),
+    command(Menu::Pack, "Any route will do", |_| {
+        Action::SetProve(Prove::None)
+    })
+    .ticked(|state| state.settings.prove == Prove::None),
+    command(Menu::Pack, "Time and memory of a search…", |_| {
+        Action::AskBudget
+    })
+    .below_a_line(),
     command(Menu::Pack, "Search again", |_| Action::StudyAgain).plain(Key::F5),
     command(Menu::Pack, "Stop the search", |_| Action::StopSearch).key(Modifiers::SHIFT, Key::F5),
     command(Menu::Help, "Keys", |_| Action::ShowKeys).plain(Key::F1),
@@ -280,7 +324,9 @@ pub fn pressed(ctx: &Context, state: &State, actions: &mut Vec<Action>) {
         }
     }
     number_keys(ctx, actions);
-    if state.stroke.is_some() && ctx.input_mut(|input| input.consume_key(Modifiers::NONE, Key::Escape)) {
+    if state.stroke.is_some()
+        && ctx.input_mut(|input| input.consume_key(Modifiers::NONE, Key::Escape))
+    {
         actions.push(Action::StrokeCancel);
     }
 }
@@ -320,7 +366,10 @@ pub fn number_key_text(nth: usize) -> Option<String> {
 
 /// The keys that are no commands, with what they do.
 pub const OTHER_KEYS: &[(&str, &str)] = &[
-    ("1 to 9, 0", "choose the first ten kinds; with Shift the next ten"),
+    (
+        "1 to 9, 0",
+        "choose the first ten kinds; with Shift the next ten",
+    ),
     ("arrows", "move the cursor on the board"),
     ("Space or Enter", "paint at the cursor"),
     ("Backspace or Delete", "clear at the cursor"),
@@ -339,7 +388,12 @@ mod tests {
     fn no_two_commands_share_a_key() {
         let keys: Vec<(KeyboardShortcut, &str)> = COMMANDS
             .iter()
-            .flat_map(|command| [(command.key, command.name), (command.other_key, command.name)])
+            .flat_map(|command| {
+                [
+                    (command.key, command.name),
+                    (command.other_key, command.name),
+                ]
+            })
             .filter_map(|(key, name)| key.map(|key| (key, name)))
             .collect();
         for (at, (key, name)) in keys.iter().enumerate() {

@@ -57,7 +57,11 @@ fn recent(ui: &mut Ui, state: &State, actions: &mut Vec<Action>) {
         for path in &state.settings.recent {
             let name = path.file_name().unwrap_or(path.as_os_str());
             let button = Button::new(name.to_string_lossy()).truncate();
-            if ui.add(button).on_hover_text(path.display().to_string()).clicked() {
+            if ui
+                .add(button)
+                .on_hover_text(path.display().to_string())
+                .clicked()
+            {
                 actions.push(Action::OpenPath(path.clone()));
                 ui.close();
             }
@@ -81,13 +85,20 @@ fn title(ui: &mut Ui, state: &State) {
         state.current().name
     );
     ui.with_layout(Layout::right_to_left(Align::Center), |ui| {
-        let colour = if state.is_dirty() { theme.amber } else { theme.muted };
+        let colour = if state.is_dirty() {
+            theme.amber
+        } else {
+            theme.muted
+        };
         let saved = ui.label(RichText::new(saved).color(colour));
         if let Some(path) = &state.path {
             saved.on_hover_text(path.display().to_string());
         }
-        ui.with_layout(Layout::centered_and_justified(egui::Direction::LeftToRight), |ui| {
-            ui.add(egui::Label::new(RichText::new(name).strong()).truncate());
-        });
+        ui.with_layout(
+            Layout::centered_and_justified(egui::Direction::LeftToRight),
+            |ui| {
+                ui.add(egui::Label::new(RichText::new(name).strong()).truncate());
+            },
+        );
     });
 }

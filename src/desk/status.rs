@@ -48,8 +48,16 @@ fn hover_text(state: &State) -> String {
 pub fn what_is_at(state: &State, cell: Cell) -> String {
     let (level, mechanics) = (state.current(), state.mechanics());
     let mut parts = vec![mechanics.ground(level.ground_at(cell)).label.as_str()];
-    parts.extend(level.item_at(cell).map(|ix| mechanics.item(ix).label.as_str()));
-    parts.extend(level.body_at(cell).map(|ix| mechanics.body(ix).label.as_str()));
+    parts.extend(
+        level
+            .item_at(cell)
+            .map(|ix| mechanics.item(ix).label.as_str()),
+    );
+    parts.extend(
+        level
+            .body_at(cell)
+            .map(|ix| mechanics.body(ix).label.as_str()),
+    );
     parts.join(", ")
 }
 
@@ -63,14 +71,23 @@ fn search_text(state: &State) -> String {
             grouped(report.positions),
             bytes_text(report.bytes)
         );
-        if let Some(tiles) = state.answers.tiles.as_ref().filter(|tiles| fresh(tiles.revision))
+        if let Some(tiles) = state
+            .answers
+            .tiles
+            .as_ref()
+            .filter(|tiles| fresh(tiles.revision))
             && !tiles.value.done
         {
             text = format!("{} tiles to ask · {text}", tiles.value.left);
         }
         return text;
     }
-    match state.answers.progress.as_ref().filter(|progress| fresh(progress.revision)) {
+    match state
+        .answers
+        .progress
+        .as_ref()
+        .filter(|progress| fresh(progress.revision))
+    {
         Some(progress) => {
             let progress = &progress.value;
             let speed = progress.positions as f64 / progress.seconds.max(1e-3);

@@ -1,9 +1,7 @@
 //! The traits of a kind in words, for tooltips.
 
 use super::state::Brush;
-use crate::level::{
-    Axis, BodyKind, Dir, GroundKind, Item, KindId, Mechanics, Opens, Role,
-};
+use crate::level::{Axis, BodyKind, Dir, GroundKind, Item, KindId, Mechanics, Opens, Role};
 
 /// What a kind does, one line a trait.
 pub fn describe(mechanics: &Mechanics, brush: Brush) -> Vec<String> {
@@ -24,7 +22,10 @@ fn ground(mechanics: &Mechanics, kind: &GroundKind) -> Vec<String> {
         None => id.to_string(),
     };
     let mut lines = Vec::new();
-    match (kind.closed_to.contains(&Role::Walker), kind.closed_to.contains(&Role::Cargo)) {
+    match (
+        kind.closed_to.contains(&Role::Walker),
+        kind.closed_to.contains(&Role::Cargo),
+    ) {
         (true, true) => lines.push("closed to everything".to_owned()),
         (true, false) => lines.push("closed to walkers".to_owned()),
         (false, true) => lines.push("closed to cargo".to_owned()),
@@ -38,13 +39,18 @@ fn ground(mechanics: &Mechanics, kind: &GroundKind) -> Vec<String> {
         lines.push("what enters keeps moving".to_owned());
     }
     if let Some(becomes) = &kind.sink {
-        lines.push(format!("swallows cargo that fills, and becomes {}", label(becomes)));
+        lines.push(format!(
+            "swallows cargo that fills, and becomes {}",
+            label(becomes)
+        ));
     }
     if let Some(becomes) = &kind.frail {
         lines.push(format!("becomes {} when left", label(becomes)));
     }
     if let Some(channel) = &kind.plate {
-        lines.push(format!("holds channel {channel} while something stands on it"));
+        lines.push(format!(
+            "holds channel {channel} while something stands on it"
+        ));
     }
     if let Some(gate) = &kind.gate {
         let when = match gate.opens {
@@ -58,7 +64,10 @@ fn ground(mechanics: &Mechanics, kind: &GroundKind) -> Vec<String> {
     }
     if let Some(lock) = &kind.lock {
         let becomes = label(&lock.becomes);
-        lines.push(format!("takes a key of channel {}, and becomes {becomes}", lock.channel));
+        lines.push(format!(
+            "takes a key of channel {}, and becomes {becomes}",
+            lock.channel
+        ));
     }
     if !kind.home.is_empty() {
         let wanted: Vec<String> = kind.home.iter().map(ToString::to_string).collect();

@@ -8,8 +8,8 @@ use super::theme::{Theme, section};
 use super::traits::describe;
 use crate::level::{BodyIx, GroundIx, ItemIx};
 use egui::{
-    Align2, Button, Color32, FontId, Rect, Response, ScrollArea, Sense, StrokeKind, TextStyle, Ui,
-    WidgetInfo, WidgetType, vec2,
+    Align2, Button, Color32, FontId, Rect, Response, Role, ScrollArea, Sense, StrokeKind,
+    TextStyle, Ui, WidgetInfo, vec2,
 };
 
 /// Side of a picture in the tray, in points.
@@ -78,12 +78,18 @@ fn grid(
     }
 }
 
-fn kind_button(ui: &mut Ui, state: &State, pictures: &mut Pictures, brush: Brush, width: f32) -> Response {
+fn kind_button(
+    ui: &mut Ui,
+    state: &State,
+    pictures: &mut Pictures,
+    brush: Brush,
+    width: f32,
+) -> Response {
     let theme = Theme::of(ui);
     let label = super::stroke::brush_label(state.mechanics(), brush).to_owned();
     let (rect, response) = ui.allocate_exact_size(vec2(width, PICTURE + 24.0), Sense::click());
     let chosen = state.brush == brush;
-    response.widget_info(|| WidgetInfo::selected(WidgetType::RadioButton, true, chosen, &label));
+    response.widget_info(|| WidgetInfo::selected(Role::RadioButton, true, chosen, &label));
     if !ui.is_rect_visible(rect) {
         return response;
     }
@@ -99,14 +105,30 @@ fn kind_button(ui: &mut Ui, state: &State, pictures: &mut Pictures, brush: Brush
         pictures.paint(painter, picture, kind, Color32::WHITE);
     }
     if chosen {
-        painter.rect_stroke(picture.expand(3.0), 5.0, (2.0, theme.amber), StrokeKind::Middle);
+        painter.rect_stroke(
+            picture.expand(3.0),
+            5.0,
+            (2.0, theme.amber),
+            StrokeKind::Middle,
+        );
     } else if response.hovered() || response.has_focus() {
-        painter.rect_stroke(picture.expand(3.0), 5.0, (1.0, theme.line), StrokeKind::Middle);
+        painter.rect_stroke(
+            picture.expand(3.0),
+            5.0,
+            (1.0, theme.line),
+            StrokeKind::Middle,
+        );
     }
     let colour = if chosen { theme.text } else { theme.muted };
     let font = FontId::new(10.5, TextStyle::Small.resolve(ui.style()).family);
     let text = fitting(ui, &label, &font, width - 2.0);
-    painter.text(rect.center_bottom() - vec2(0.0, 1.0), Align2::CENTER_BOTTOM, text, font, colour);
+    painter.text(
+        rect.center_bottom() - vec2(0.0, 1.0),
+        Align2::CENTER_BOTTOM,
+        text,
+        font,
+        colour,
+    );
     response
 }
 
@@ -124,7 +146,14 @@ fn fitting(ui: &Ui, text: &str, font: &FontId, width: f32) -> String {
     let letters: Vec<char> = text.chars().collect();
     (1..letters.len())
         .rev()
-        .map(|end| letters[..end].iter().collect::<String>().trim_end().to_owned() + "…")
+        .map(|end| {
+            letters[..end]
+                .iter()
+                .collect::<String>()
+                .trim_end()
+                .to_owned()
+                + "…"
+        })
         .find(|cut| measure(cut.clone()) <= width)
         .unwrap_or_default()
 }
@@ -160,7 +189,11 @@ fn tools(ui: &mut Ui, state: &State, actions: &mut Vec<Action>) {
                     .min_size(vec2(width, 0.0));
                 let action = Action::ChooseTool(tool);
                 let key = key_text(ui.ctx(), state, &action).unwrap_or_default();
-                if ui.add(button).on_hover_text(format!("{hint} ({key})")).clicked() {
+                if ui
+                    .add(button)
+                    .on_hover_text(format!("{hint} ({key})"))
+                    .clicked()
+                {
                     actions.push(action);
                 }
             }
@@ -170,16 +203,36 @@ fn tools(ui: &mut Ui, state: &State, actions: &mut Vec<Action>) {
 
 fn overlays(ui: &mut Ui, state: &State, actions: &mut Vec<Action>) {
     let flags = [
-        (ShowFlag::Heat, "heat", "how many positions fold away with the walker on the tile"),
-        (ShowFlag::IdleTiles, "idle tiles", "hatch tiles that nobody needs"),
-        (ShowFlag::FoldReach, "fold reach", "outline where the walker can go and come back"),
-        (ShowFlag::Problems, "problems", "mark the cells that a problem is about"),
+        (
+            ShowFlag::Heat,
+            "heat",
+            "how many positions fold away with the walker on the tile",
+        ),
+        (
+            ShowFlag::IdleTiles,
+            "idle tiles",
+            "hatch tiles that nobody needs",
+        ),
+        (
+            ShowFlag::FoldReach,
+            "fold reach",
+            "outline where the walker can go and come back",
+        ),
+        (
+            ShowFlag::Problems,
+            "problems",
+            "mark the cells that a problem is about",
+        ),
     ];
     for (flag, name, hint) in flags {
         let mut on = state.show.is_on(flag);
         let action = Action::Toggle(flag);
         let key = key_text(ui.ctx(), state, &action).unwrap_or_default();
-        if ui.checkbox(&mut on, name).on_hover_text(format!("{hint} ({key})")).changed() {
+        if ui
+            .checkbox(&mut on, name)
+            .on_hover_text(format!("{hint} ({key})"))
+            .changed()
+        {
             actions.push(action);
         }
     }

@@ -9,7 +9,7 @@ use super::pictures::Pictures;
 use super::state::State;
 use super::theme::Theme;
 use crate::level::Cell;
-use egui::{Event, Key, Modifiers, Rect, Sense, Ui, WidgetInfo, WidgetType};
+use egui::{Event, Key, Modifiers, Rect, Role, Sense, Ui, WidgetInfo};
 
 pub use place::Place;
 
@@ -23,13 +23,18 @@ pub struct Shown {
 }
 
 /// Draws the board and pushes what the user did on it.
-pub fn show(ui: &mut Ui, state: &State, pictures: &mut Pictures, actions: &mut Vec<Action>) -> Shown {
+pub fn show(
+    ui: &mut Ui,
+    state: &State,
+    pictures: &mut Pictures,
+    actions: &mut Vec<Action>,
+) -> Shown {
     let theme = Theme::of(ui);
     let rect = ui.available_rect_before_wrap();
     let id = ui.make_persistent_id("board");
     let response = ui.interact(rect, id, Sense::click_and_drag());
     ui.advance_cursor_after_rect(rect);
-    response.widget_info(|| WidgetInfo::labeled(WidgetType::Other, true, board_label(state)));
+    response.widget_info(|| WidgetInfo::labeled(Role::Canvas, true, board_label(state)));
 
     let painter = ui.painter_at(rect);
     painter.rect_filled(rect, 0.0, theme.ground);

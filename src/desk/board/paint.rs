@@ -1,6 +1,7 @@
 //! Drawing the level: grounds as one mesh a kind, then items and bodies, then the marks of hand and keyboard.
 
 use super::Place;
+use crate::desk::overlay;
 use crate::desk::pictures::{Kind, Pictures};
 use crate::desk::state::{Brush, State};
 use crate::desk::theme::Theme;
@@ -33,6 +34,7 @@ pub fn level(painter: &Painter, state: &State, pictures: &mut Pictures, place: &
         pictures.paint_all(painter, rects, Kind::Ground(*ground), Color32::WHITE);
     }
     grid(painter, place);
+    overlay::paint_under(painter, state, place);
     for cell in place.cells_in_view() {
         if let Some(item) = scene.items[size.index(cell)] {
             pictures.paint(painter, place.rect(cell), Kind::Item(item), Color32::WHITE);
@@ -41,7 +43,13 @@ pub fn level(painter: &Painter, state: &State, pictures: &mut Pictures, place: &
     let seen = place.panel;
     for (kind, cells) in &scene.bodies {
         if cells.iter().any(|&cell| place.rect(cell).intersects(seen)) {
-            pictures.paint_block(painter, *kind, cells, |cell| place.rect(cell), Color32::WHITE);
+            pictures.paint_block(
+                painter,
+                *kind,
+                cells,
+                |cell| place.rect(cell),
+                Color32::WHITE,
+            );
         }
     }
 }
@@ -101,14 +109,25 @@ fn grid(painter: &Painter, place: &Place) {
 }
 
 /// Marks of the gesture under way and of the keyboard cursor.
-pub fn marks(painter: &Painter, theme: &Theme, state: &State, pictures: &mut Pictures, place: &Place) {
+pub fn marks(
+    painter: &Painter,
+    theme: &Theme,
+    state: &State,
+    pictures: &mut Pictures,
+    place: &Place,
+) {
     if let Some(stroke) = &state.stroke {
         for cell in stroke.preview() {
             let rect = place.rect(cell);
             if let Some(kind) = Kind::of(stroke.brush) {
                 pictures.paint(painter, rect, kind, Color32::from_white_alpha(190));
             }
-            painter.rect_stroke(rect, 0.0, (1.5, mark_colour(theme, stroke.brush)), StrokeKind::Inside);
+            painter.rect_stroke(
+                rect,
+                0.0,
+                (1.5, mark_colour(theme, stroke.brush)),
+                StrokeKind::Inside,
+            );
         }
     }
     if let Some(cursor) = state.cursor {

@@ -134,7 +134,7 @@ impl Place {
             self.origin.y * scale,
             self.cell_points * scale
         );
-        let last = egui::Id::new("logged-board-place");
+        let last = egui::Id::unique("logged-board-place");
         if ctx.data(|data| data.get_temp::<String>(last)).as_ref() != Some(&text) {
             log::debug!(target: "foldwright::geometry", "{text}");
             ctx.data_mut(|data| data.insert_temp(last, text));
