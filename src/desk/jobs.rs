@@ -58,7 +58,7 @@ pub fn write(
         Err(SaveFault::Changed)
     } else {
         let text = file::write_pack(&pack, preamble);
-        file::save_atomic(&path, &text)
+        save_atomic(&path, &text)
             .map(|()| FilePrint::of(text.as_bytes()))
             .map_err(|fault| SaveFault::Refused(fault.to_string()))
     };
@@ -75,4 +75,15 @@ fn look_at(path: &Path) -> Option<FilePrint> {
     std::fs::read(path)
         .ok()
         .map(|content| FilePrint::of(&content))
+}
+
+fn save_atomic(path: &Path, text: &str) -> std::io::Result<()> {
+    use std::io::Write;
+    let folder = path
+        .parent()
+        .filter(|folder| !folder.as_os_str().is_empty());
+    let mut new = tempfile::NamedTempFile::new_in(folder.unwrap_or(Path::new(".")))?;
+    new.write_all(text.as_bytes())?;
+    new.as_file().sync_all()?;
+    new.persist(path).map(drop).map_err(|fault| fault.error)
 }

@@ -13,6 +13,16 @@ impl Keeper {
         Keeper::default()
     }
 
+    /// Keeps all in the user's own folder for programs' data.
+    pub fn in_user_folder() -> Keeper {
+        Keeper::default()
+    }
+
+    /// The settings kept last, or the usual ones.
+    pub fn settings(&self) -> Settings {
+        Settings::default()
+    }
+
     /// What an earlier session left behind, for people.
     pub fn left_behind(&self) -> Option<String> {
         None

@@ -63,7 +63,9 @@ pub fn run(path: Option<PathBuf>) -> Result<(), DeskError> {
     match opened {
         Ok(Ok(())) => Ok(()),
         Ok(Err(fault)) => Err(DeskError::NoWindow(fault.to_string())),
-        Err(_) => Err(DeskError::NoWindow("a library that it needs failed".to_owned())),
+        Err(_) => Err(DeskError::NoWindow(
+            "a library that it needs failed".to_owned(),
+        )),
     }
 }
 
