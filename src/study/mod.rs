@@ -1,7 +1,9 @@
 //! The designer's questions, answered: rules joined with search.
 
+mod certificate;
 mod report;
 
+pub use certificate::{Uncertified, certificate};
 pub use report::{
     Bounds, Figure, Halt, Limits, MapCounts, Outcome, Progress, Prove, Report, Stage, TileClass,
     UndecidedReason, Watch,
