@@ -25,6 +25,7 @@ mod state;
 mod tables;
 #[cfg(test)]
 mod tests;
+mod walks;
 
 pub use facts::{BodyTraits, GroundTraits, ItemTraits};
 pub use goal::Condition;
@@ -44,6 +45,11 @@ pub struct Rules {
     layout: Layout,
     /// None: nothing is ever finished.
     goal: Option<Vec<Condition>>,
+    /// What the survey of a walk notes of each kind of ground, and of each cell at the start (see `walks.rs`).
+    ground_notes: Vec<u8>,
+    start_notes: Vec<u8>,
+    /// Neighbours, with one index past the last cell for all that is off the board.
+    walk_next: Vec<[u16; 4]>,
 }
 
 /// A position in packed, canonical form: equal positions (rules.md, Position) have equal words.
@@ -121,11 +127,8 @@ impl Rules {
     pub fn compile(mechanics: &Mechanics, level: &Level) -> Result<Rules, Vec<Problem>> {
         refuse_invalid(crate::level::problems(mechanics, level))?;
         let tables = Tables::compile(mechanics, level);
-        Ok(Rules {
-            layout: Layout::new(&tables),
-            goal: Some(goal::compile(mechanics, level, &tables)),
-            tables,
-        })
+        let goal = goal::compile(mechanics, level, &tables);
+        Ok(Rules::assemble(tables, Some(goal)))
     }
 
     /// Compiles a level with the objective off: nothing is ever finished, and what is wrong with homes or objective does not
@@ -135,12 +138,25 @@ impl Rules {
     /// As [`Rules::compile`], but only from [`crate::level::structural_problems`].
     pub fn compile_open(mechanics: &Mechanics, level: &Level) -> Result<Rules, Vec<Problem>> {
         refuse_invalid(crate::level::structural_problems(mechanics, level))?;
-        let tables = Tables::compile(mechanics, level);
-        Ok(Rules {
+        Ok(Rules::assemble(Tables::compile(mechanics, level), None))
+    }
+
+    fn assemble(tables: Tables, goal: Option<Vec<Condition>>) -> Rules {
+        let minds_walker = walks::goal_minds_walker(&tables, goal.as_deref());
+        let ground_notes = walks::ground_notes(&tables, minds_walker);
+        let starts = tables.start_ground.iter();
+        let mut start_notes: Vec<u8> = starts
+            .map(|&ground| ground_notes[usize::from(ground)])
+            .collect();
+        start_notes.push(0);
+        Rules {
             layout: Layout::new(&tables),
-            goal: None,
+            goal,
+            ground_notes,
+            start_notes,
+            walk_next: walk_next(&tables.next),
             tables,
-        })
+        }
     }
 
     /// The same level with one tile closed (rules.md, Measures of a level): nothing can enter it, nor can a warp bring a body
@@ -159,6 +175,7 @@ impl Rules {
                 *twin = NONE;
             }
         }
+        rules.walk_next = walk_next(&rules.tables.next);
         rules
     }
 
@@ -283,4 +300,14 @@ fn refuse_invalid(mut problems: Vec<Problem>) -> Result<(), Vec<Problem>> {
     } else {
         Err(problems)
     }
+}
+
+fn walk_next(next: &[[u16; 4]]) -> Vec<[u16; 4]> {
+    let off_board = next.len() as u16;
+    let mut nexts: Vec<[u16; 4]> = next
+        .iter()
+        .map(|dirs| dirs.map(|cell| if cell == NONE { off_board } else { cell }))
+        .collect();
+    nexts.push([off_board; 4]);
+    nexts
 }

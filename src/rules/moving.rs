@@ -10,7 +10,7 @@ impl Rules {
     }
 
     /// Judges the gates, once, from the position before the step.
-    fn judge_gates(&self, s: &mut Scratch) {
+    pub(super) fn judge_gates(&self, s: &mut Scratch) {
         if self.tables.plates.is_empty() {
             return;
         }
@@ -42,16 +42,20 @@ impl Rules {
         if ground.flags & closed != 0 || ground.enter & (1 << dir.index()) == 0 {
             return false;
         }
-        if ground.flags & flag::GATE != 0 {
-            let held = s.held[usize::from(ground.gate)];
-            if held == (ground.flags & flag::OPENS_WHEN_FREE != 0) {
-                return false;
-            }
+        if ground.flags & flag::GATE != 0 && !self.gate_is_open(s, cell) {
+            return false;
         }
         if ground.flags & flag::SINK != 0 && !body.fills {
             return false;
         }
         ground.flags & flag::LOCK == 0 || body.walker && s.keys[usize::from(ground.lock)] > 0
+    }
+
+    /// Whether the ground of a cell is no gate, or one that was open before the step.
+    pub(super) fn gate_is_open(&self, s: &Scratch, cell: u16) -> bool {
+        let ground = self.ground_of(s, cell);
+        let when_free = ground.flags & flag::OPENS_WHEN_FREE != 0;
+        ground.flags & flag::GATE == 0 || s.held[usize::from(ground.gate)] != when_free
     }
 
     /// The body leaves `cell`: nobody stands there now, and frail ground changes.

@@ -2,7 +2,7 @@
 
 use super::tables::NONE;
 use super::{Played, Position, Rules, Scratch, Step, View, ViewBody};
-use crate::level::{BodyIx, Control, Dir, DragStep, GroundIx, ItemIx, Route};
+use crate::level::{BodyIx, Control, DragStep, GroundIx, ItemIx, Route};
 
 impl Rules {
     /// The start unpacked for drawing.
@@ -113,10 +113,5 @@ impl Rules {
         let mut slots: Vec<usize> = (first..end).collect();
         slots.sort_by_key(|&slot| s.at[slot]);
         Some(slots[wanted - first])
-    }
-
-    /// The steps that a walker's walk inside its roam takes, as a route would name them.
-    pub(super) fn steer_step(dir: Dir) -> Step {
-        Step { slot: 0, dir }
     }
 }

@@ -80,7 +80,7 @@ impl Roam {
         self.departures.clear();
     }
 
-    fn add(&mut self, member: Member) {
+    pub(super) fn add(&mut self, member: Member) {
         if member.cell != Roam::NOWHERE {
             self.at_cell[usize::from(member.cell)] = self.members.len() as u16 + 1;
         }
@@ -100,27 +100,32 @@ impl Rules {
     /// So is a finished position, and no step departs from it; the roams of others hold no finished position.
     pub fn roam(&self, s: &mut Scratch, from: &[u64], out: &mut Roam) {
         out.begin(self.tables.size.area());
-        let finished = self.finished_in(s, from);
+        self.load(s, from);
+        let finished = self.goal_holds(s);
         let walker = match self.tables.walkers[..] {
             [walker] if self.tables.control == Control::Steer => walker,
             _ => {
                 out.add(ENTRY);
                 if !finished {
-                    self.load(s, from);
                     self.each_candidate(s, |step| {
-                        out.departures.push(Departure { member: 0, step })
+                        out.departures.push(Departure { member: 0, step });
                     });
                 }
                 return;
             }
         };
-        let field = self.layout.bodies[usize::from(walker)];
-        let cell = self.tables.places[field.read(from).min(self.tables.places.len() - 1)];
+        let cell = s.at[usize::from(walker)];
         out.add(Member { cell, ..ENTRY });
-        if finished {
-            return;
+        if !finished {
+            self.survey(s, walker);
+            let field = self.layout.bodies[usize::from(walker)];
+            self.spread(s, from, field, out);
         }
-        self.roam_by_trying(s, from, field, out);
+    }
+
+    pub(super) fn cell_in(&self, field: Field, words: &[u64]) -> u16 {
+        let places = &self.tables.places;
+        places[field.read(words).min(places.len() - 1)]
     }
 
     /// The position of a member: `from` is any position of the same roam.
@@ -141,72 +146,6 @@ impl Rules {
             Some(member) => self.member_position(from, member, out),
             None => out.copy_from_slice(from),
         }
-    }
-
-    /// Tries every step of every member, forth and back.
-    fn roam_by_trying(&self, s: &mut Scratch, from: &[u64], field: Field, out: &mut Roam) {
-        let [mut here, mut there, mut back] = std::mem::take(&mut s.words);
-        let mut at = 0;
-        while at < out.members.len() {
-            let member = out.members[at];
-            self.member_position(from, &member, &mut here);
-            for dir in Dir::ALL {
-                let step = Rules::steer_step(dir);
-                let Some(info) = self.step_into(s, &here, step, &mut there) else {
-                    continue;
-                };
-                if !info.finished && self.links(s, &here, &there, &mut back, field, dir) {
-                    let place = field.read(&there).min(self.tables.places.len() - 1);
-                    let cell = self.tables.places[place];
-                    if out.member_at(cell).is_none() {
-                        out.add(Member {
-                            cell,
-                            distance: member.distance + 1,
-                            parent: at as u16,
-                            dir,
-                        });
-                    }
-                } else {
-                    let member = at as u16;
-                    out.departures.push(Departure { member, step });
-                }
-            }
-            at += 1;
-        }
-        s.words = [here, there, back];
-    }
-
-    /// Whether two positions, the second a step in `dir` from the first, differ only in the walker and the step is undone at once.
-    fn links(
-        &self,
-        s: &mut Scratch,
-        here: &[u64],
-        there: &[u64],
-        back: &mut [u64],
-        field: Field,
-        dir: Dir,
-    ) -> bool {
-        let walker_bits = |word: usize| {
-            if word == field.word as usize {
-                field.mask << field.shift
-            } else {
-                0
-            }
-        };
-        let same_rest = here
-            .iter()
-            .zip(there)
-            .enumerate()
-            .all(|(word, (a, b))| (a ^ b) & !walker_bits(word) == 0);
-        let first = dir.opposite();
-        same_rest
-            && std::iter::once(first)
-                .chain(Dir::ALL.into_iter().filter(|&dir| dir != first))
-                .any(|dir| {
-                    self.step_into(s, there, Rules::steer_step(dir), back)
-                        .is_some()
-                        && *back == *here
-                })
     }
 
     /// The cells that the walker of a position can reach by steps that are undone at once and change nothing but where it

@@ -127,6 +127,8 @@ pub(crate) struct Tables {
     pub twin: Vec<u16>,
     /// Cells that may be or become a plate, if there is any gate to hear them.
     pub plates: Vec<u16>,
+    /// Cells that may be or become a gate.
+    pub gates: Vec<u16>,
     /// Cells that may be or become a home.
     pub homes: Vec<u16>,
     /// Cells on which a body can ever stand, ascending.
@@ -171,6 +173,7 @@ impl Tables {
             next: neighbours(size),
             twin: twins(mechanics, level),
             plates: Vec::new(),
+            gates: Vec::new(),
             homes: Vec::new(),
             places: Vec::new(),
             place_of: vec![NONE; size.area()],
@@ -199,11 +202,6 @@ impl Tables {
             .classes
             .iter()
             .any(|class| self.bodies[class.slots.0].fills && class.shape.len() == 1);
-        let hears = |tables: &Tables| {
-            tables
-                .start_options()
-                .any(|(_, ground)| tables.grounds[usize::from(ground)].flags & flag::GATE != 0)
-        };
         for cell in 0..self.size.area() {
             let mut options = vec![self.start_ground[cell]];
             let mut seen = 0;
@@ -230,7 +228,8 @@ impl Tables {
             }
         }
         self.homes = self.cells_with(flag::HOME);
-        if hears(self) {
+        self.gates = self.cells_with(flag::GATE);
+        if !self.gates.is_empty() {
             self.plates = self.cells_with(flag::PLATE);
         }
     }
