@@ -157,8 +157,8 @@ fn every_field_arrives_in_the_model() {
     let level = &pack.levels[0];
     let bench = pack
         .mechanics
-        .find_body(&KindId::new("bench").unwrap())
-        .unwrap();
+        .find_body(&KindId::new("bench").expect("there"))
+        .expect("there");
     assert_eq!(pack.mechanics.control, Control::Drag);
     assert_eq!(
         (
@@ -279,7 +279,11 @@ fn faults_of_the_text_are_refused_with_their_place() {
         "too great",
     );
     check("],\n)\n", "],\n)\n¦x", "closing parenthesis");
-    check("name: \"First bed\",", "name: \"First bed\"¦", "comma");
+    check(
+        "\"First bed\",\n            ",
+        "\"First bed\"\n            ¦",
+        "comma",
+    );
 }
 
 #[test]
@@ -396,8 +400,8 @@ fn faults_of_levels_are_refused_with_their_place() {
     );
     check("[\n                \"------\",", "¦[", "3 rows here and 4");
     let rows = |row: &str, times: usize| vec![format!("\"{row}\""); times].join(",");
-    let from = EXAMPLE.find("ground: [\n").unwrap();
-    let ground = &EXAMPLE[from..EXAMPLE.find("            bodies: [\n").unwrap()];
+    let from = EXAMPLE.find("ground: [\n").expect("there");
+    let ground = &EXAMPLE[from..EXAMPLE.find("            bodies: [\n").expect("there")];
     check(ground, "ground: ¦[],\n", "1 to 64 rows");
     check(
         ground,
@@ -514,13 +518,13 @@ fn kinds_without_a_character_get_one_and_the_text_is_stable_after_one_save() {
 fn a_thousand_kinds_on_one_pack_all_get_a_character() {
     let mut pack = pack_of(EXAMPLE);
     let mut mechanics = Mechanics::clone(&pack.mechanics);
-    let id = |at: usize| KindId::new(format!("g{at}")).unwrap();
+    let id = |at: usize| KindId::new(format!("g{at}")).expect("there");
     mechanics.grounds = (0..1_000)
         .map(|at| GroundKind::plain(id(at), "g"))
         .collect();
     mechanics.legend = Legend::default();
     pack.mechanics = Arc::new(mechanics);
-    let mut level = Level::filled("all", Size::new(40, 25).unwrap(), GroundIx(0));
+    let mut level = Level::filled("all", Size::new(40, 25).expect("there"), GroundIx(0));
     level.ground = (0..1_000).map(GroundIx).collect();
     pack.levels = vec![Arc::new(level)];
     assert_eq!(pack_of(&write_pack(&pack, "")).levels, pack.levels);
