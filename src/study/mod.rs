@@ -1,6 +1,7 @@
 //! The designer's questions, answered: rules joined with search.
 
 mod certificate;
+pub mod fast;
 mod report;
 
 pub use certificate::{Uncertified, certificate};
