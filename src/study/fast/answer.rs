@@ -213,9 +213,10 @@ impl<const N: usize> Study<'_, N> {
     }
 
     fn fewest_steps(&mut self, demand: &Demand) -> Result<(), Stop> {
-        let mut any = self.best.is_none().then(|| {
-            PushSearch::new(self.board, demand, Order::AnyRoute, &mut self.meter)
-        });
+        let mut any = self
+            .best
+            .is_none()
+            .then(|| PushSearch::new(self.board, demand, Order::AnyRoute, &mut self.meter));
         let mut waves = StepSearch::new(self.board, demand);
         let mut size = FIRST_SLICE;
         loop {
@@ -291,9 +292,10 @@ impl<const N: usize> Study<'_, N> {
             Prove::Pushes => (u64::from(pushes), steps as u64),
             _ => (steps as u64, u64::from(pushes)),
         };
-        let better = self.best.as_ref().is_none_or(|best| {
-            key(steps.len(), pushes) < key(best.steps.len(), best.pushes)
-        });
+        let better = self
+            .best
+            .as_ref()
+            .is_none_or(|best| key(steps.len(), pushes) < key(best.steps.len(), best.pushes));
         if better {
             self.watch.route(&Route::Steer(steps.clone()));
             self.best = Some(Found {
@@ -368,7 +370,11 @@ impl<const N: usize> Study<'_, N> {
         let high = self.best.as_ref().map(|best| best.steps.len() as u32);
         let proved_steps = stop.is_none() && matches!(self.prove, Prove::Steps | Prove::Both);
         if let Some(high) = high {
-            self.steps_low = if proved_steps { high } else { self.steps_low.min(high) };
+            self.steps_low = if proved_steps {
+                high
+            } else {
+                self.steps_low.min(high)
+            };
         }
         let report = Report {
             outcome,

@@ -48,6 +48,8 @@ pub(super) struct Board<const N: usize> {
     not_first: Bits<N>,
     not_last: Bits<N>,
     pub walker: usize,
+    /// The objective is off: nothing is ever finished.
+    pub never: bool,
     pub homes_filled: bool,
     pub walkers_out: bool,
     /// By the kinds of the pack.
@@ -77,6 +79,8 @@ pub(super) struct Plan {
     pub exits: Vec<usize>,
     pub homes: Vec<usize>,
     pub walker: usize,
+    /// The objective is off: nothing is ever finished.
+    pub never: bool,
     pub homes_filled: bool,
     pub walkers_out: bool,
     pub countable: bool,
@@ -116,6 +120,7 @@ impl<const N: usize> Board<N> {
             not_first: column(0),
             not_last: column(plan.width - 1),
             walker: plan.walker,
+            never: plan.never,
             homes_filled: plan.homes_filled,
             walkers_out: plan.walkers_out,
             groups: merge(&kinds),
@@ -208,6 +213,9 @@ impl<const N: usize> Board<N> {
     /// Whether the cargo stands as the objective wants it, whatever the walker does.
     #[inline]
     pub fn cargo_done(&self, cargo: &Cargo<N>, groups: &[Bits<N>]) -> bool {
+        if self.never {
+            return false;
+        }
         let mut unfilled = if self.homes_filled {
             self.homes
         } else {
@@ -265,13 +273,6 @@ impl<const N: usize> Board<N> {
             (self.corner.1 + at / self.width) as u8,
         );
         self.size.index(cell)
-    }
-
-    /// The cell of the box at a place of the level, if it is inside.
-    pub fn box_cell(&self, cell: Cell) -> Option<usize> {
-        let x = usize::from(cell.x).checked_sub(self.corner.0)?;
-        let y = usize::from(cell.y).checked_sub(self.corner.1)?;
-        (x < self.width && y < self.height).then(|| y * self.width + x)
     }
 }
 

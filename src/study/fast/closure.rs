@@ -86,13 +86,7 @@ impl<const N: usize> Closure<N> {
         self.store.bytes() + self.edges.bytes() + held(&self.finished)
     }
 
-    fn open(
-        &mut self,
-        board: &Board<N>,
-        node: u32,
-        cargo: &mut Vec<Bits<N>>,
-        meter: &mut Meter,
-    ) {
+    fn open(&mut self, board: &Board<N>, node: u32, cargo: &mut Vec<Bits<N>>, meter: &mut Meter) {
         let reach = self.store.cells(node);
         cargo.clear();
         cargo.extend_from_slice(self.store.cargo(node));

@@ -5,293 +5,296 @@
 //! never changes here, so what is certain at the start stays so.
 
 use super::board::{Plan, PlanKind};
-use crate::level::{
-    Cell, Channel, Clause, Control, Dir, GroundKind, Item, Level, Mechanics, Opens, Role,
-};
+use crate::level::{Control, Dir, Opens};
+use crate::rules::{Condition, GroundTraits, Rules};
 
 /// More cargo, or more homes, than this goes to the general lane: matchings would cost too much.
 const MOST_BODIES: usize = 64;
 
-/// What a ground kind is to a level of the fast lane.
-#[derive(Clone, Copy, PartialEq, Eq)]
+/// Who may enter a cell.
+#[derive(Clone, Copy)]
 struct Open {
     walker: bool,
     cargo: bool,
 }
 
+const SHUT: Open = Open {
+    walker: false,
+    cargo: false,
+};
+
+/// The level as it stands at the start.
+struct Start<'a> {
+    rules: &'a Rules,
+    open: Vec<Open>,
+    /// By cell: the slot of the body on it.
+    body: Vec<Option<usize>>,
+    walker: usize,
+    /// By cell: whether the walker could come there if cargo that can be pushed were not there.
+    walk: Vec<bool>,
+}
+
 /// The plan of a level, or `None` if a trait is in play that the fast lane does not know.
-pub(super) fn plan(mechanics: &Mechanics, level: &Level) -> Option<Plan> {
-    if mechanics.control != Control::Steer || !level.blocks.is_empty() {
+pub(super) fn plan(rules: &Rules) -> Option<Plan> {
+    let one_walker = rules.control() == Control::Steer && rules.walkers().len() == 1;
+    let cargo = rules.bodies().checked_sub(1)?;
+    let weak = rules.strength() == 1 || cargo == 1;
+    let fits = cargo <= MOST_BODIES && rules.home_cells().len() <= MOST_BODIES;
+    if !one_walker || !(weak || cargo == 0) || !fits || rules.ground_can_change() {
         return None;
     }
-    let walker = only_walker(mechanics, level)?;
-    let cargo_count = level.bodies.iter().flatten().count() - 1;
-    if cargo_count > MOST_BODIES || (mechanics.strength != 1 && cargo_count > 1) {
-        return None;
-    }
-    let open = open_cells(mechanics, level)?;
-    let objective = Objective::of(mechanics, level)?;
-    let walk = walker_area(mechanics, level, &open, walker)?;
-    let inside = inside(mechanics, level, &open, &walk);
-    lay_out(mechanics, level, &objective, &open, &walk, &inside, walker)
+    let start = Start::of(rules)?;
+    let objective = Objective::of(rules)?;
+    start.lay_out(&objective)
 }
 
-fn only_walker(mechanics: &Mechanics, level: &Level) -> Option<usize> {
-    let mut walker = None;
-    for (at, kind) in level.bodies.iter().enumerate() {
-        let Some(kind) = kind.map(|kind| mechanics.body(kind)) else {
-            continue;
-        };
-        match kind.role {
-            Role::Walker if walker.is_some() => return None,
-            Role::Walker => walker = Some(at),
-            Role::Cargo if kind.tow || (kind.push && kind.glide) => return None,
-            Role::Cargo => {}
-        }
-    }
-    walker
-}
-
-fn open_cells(mechanics: &Mechanics, level: &Level) -> Option<Vec<Open>> {
-    let world = World::of(mechanics, level);
-    let kinds: Vec<Option<Open>> = mechanics
-        .grounds
-        .iter()
-        .map(|kind| world.open(kind))
-        .collect();
-    let mut open = Vec::with_capacity(level.ground.len());
-    for (at, &ground) in level.ground.iter().enumerate() {
-        let kind = mechanics.ground(ground);
-        if level.bodies[at].is_some() && kind.frail.is_some() {
-            return None;
-        }
-        open.push(kinds[usize::from(ground.0)]?);
-    }
-    Some(open)
-}
-
-/// What is on the board that other traits listen to.
-struct World<'a> {
-    plates: Vec<&'a Channel>,
-    keys: Vec<&'a Channel>,
-    fills: bool,
-}
-
-impl<'a> World<'a> {
-    fn of(mechanics: &'a Mechanics, level: &'a Level) -> World<'a> {
-        let plates = level
-            .ground
-            .iter()
-            .filter_map(|&ground| mechanics.ground(ground).plate.as_ref());
-        let keys = level
-            .items
-            .iter()
-            .flatten()
-            .filter_map(|&item| match &mechanics.item(item).item {
-                Item::Key(channel) => Some(channel),
-                Item::Gem => None,
-            });
-        World {
-            plates: plates.collect(),
-            keys: keys.collect(),
-            fills: level
-                .bodies
-                .iter()
-                .flatten()
-                .any(|&body| mechanics.body(body).fills),
-        }
-    }
-
-    /// Who may enter a kind, or `None` if it is beyond the fast lane.
-    fn open(&self, kind: &GroundKind) -> Option<Open> {
-        const SHUT: Open = Open {
-            walker: false,
-            cargo: false,
-        };
-        let listened = |channel: &Channel| self.plates.contains(&channel);
-        let shut_gate = kind
-            .gate
-            .as_ref()
-            .is_some_and(|gate| gate.opens == Opens::WhenHeld && !listened(&gate.channel));
-        let shut_lock = kind
-            .lock
-            .as_ref()
-            .is_some_and(|lock| !self.keys.contains(&&lock.channel));
-        let shut_sink =
-            kind.sink.is_some() && (!self.fills || kind.closed_to.contains(&Role::Cargo));
-        if kind.closed_to_all() || shut_gate || shut_lock || shut_sink {
-            return Some(SHUT);
-        }
-        let one_way =
-            !kind.enter_only.is_empty() && !Dir::ALL.iter().all(|d| kind.enter_only.contains(d));
-        let moves = kind
-            .gate
-            .as_ref()
-            .is_some_and(|gate| listened(&gate.channel));
-        let beyond = one_way
-            || moves
-            || kind.slick
-            || kind.sink.is_some()
-            || kind.frail.is_some()
-            || kind.warp.is_some()
-            || kind.lock.is_some();
-        (!beyond).then(|| Open {
-            walker: !kind.closed_to.contains(&Role::Walker),
-            cargo: !kind.closed_to.contains(&Role::Cargo),
-        })
-    }
-}
-
-struct Objective<'a> {
+struct Objective {
+    never: bool,
     homes_filled: bool,
     walkers_out: bool,
-    named: Vec<&'a crate::level::KindId>,
+    named: Vec<u16>,
 }
 
-impl<'a> Objective<'a> {
-    fn of(mechanics: &'a Mechanics, level: &'a Level) -> Option<Objective<'a>> {
-        let clauses = level.objective(mechanics);
-        if clauses.is_empty() {
-            return None;
-        }
+impl Objective {
+    fn of(rules: &Rules) -> Option<Objective> {
         let mut objective = Objective {
+            never: rules.conditions().is_none(),
             homes_filled: false,
             walkers_out: false,
             named: Vec::new(),
         };
-        for clause in clauses {
-            match clause {
-                Clause::HomesFilled => objective.homes_filled = true,
-                Clause::WalkersOut => objective.walkers_out = true,
-                Clause::CargoHome(ids) => objective.named.extend(ids),
-                Clause::GemsTaken => {
-                    let gem = |&item| mechanics.item(item).item == Item::Gem;
-                    if level.items.iter().flatten().any(gem) {
-                        return None;
-                    }
-                }
+        for condition in rules.conditions().unwrap_or_default() {
+            match condition {
+                Condition::HomesFilled => objective.homes_filled = true,
+                Condition::WalkersOut => objective.walkers_out = true,
+                Condition::CargoHome(slots) => objective.named.extend(slots),
+                Condition::GemsTaken(gems) if gems.is_empty() => {}
+                Condition::GemsTaken(_) => return None,
             }
         }
         Some(objective)
     }
 }
 
-/// Cargo that stands where it is for ever.
-fn fixed(mechanics: &Mechanics, level: &Level, at: usize) -> bool {
-    level.bodies[at].is_some_and(|body| {
-        let kind = mechanics.body(body);
-        kind.role == Role::Cargo && !kind.push
-    })
+/// What is on the board that grounds listen to.
+struct World {
+    plates: Vec<u16>,
+    keys: Vec<u16>,
+    fills: bool,
 }
 
-/// Where the walker could come if cargo that can be pushed were not there; `None` if it starts where it may not enter.
-fn walker_area(
-    mechanics: &Mechanics,
-    level: &Level,
-    open: &[Open],
-    walker: usize,
-) -> Option<Vec<bool>> {
-    if !open[walker].walker {
-        return None;
+impl World {
+    fn of(rules: &Rules) -> World {
+        let grounds = (0..rules.size().area()).map(|at| ground(rules, at));
+        World {
+            plates: grounds.filter_map(|ground| ground.plate).collect(),
+            keys: rules.items().filter_map(|item| item.key).collect(),
+            fills: (0..rules.bodies()).any(|slot| rules.body_traits(slot).fills),
+        }
     }
-    let mut area = vec![false; open.len()];
-    area[walker] = true;
-    let mut queue = vec![walker];
-    while let Some(at) = queue.pop() {
-        for dir in Dir::ALL {
-            let Some(next) = level.size.neighbour(level.size.cell(at), dir) else {
-                continue;
-            };
-            let next = level.size.index(next);
-            if open[next].walker && !area[next] && !fixed(mechanics, level, next) {
-                area[next] = true;
-                queue.push(next);
+
+    /// Who may enter such ground, or `None` if it is beyond the fast lane.
+    fn open(&self, ground: &GroundTraits) -> Option<Open> {
+        let held = |channel: u16| self.plates.contains(&channel);
+        let gate_shut = ground
+            .gate
+            .is_some_and(|(channel, opens)| opens == Opens::WhenHeld && !held(channel));
+        let lock_shut = ground
+            .lock
+            .is_some_and(|channel| !self.keys.contains(&channel));
+        let sink_shut = ground.sink && (!self.fills || ground.closed_to_cargo);
+        let closed = ground.closed_to_walkers && ground.closed_to_cargo;
+        if closed || gate_shut || lock_shut || sink_shut {
+            return Some(SHUT);
+        }
+        let beyond = ground.enter != 0b1111
+            || ground.slick
+            || ground.sink
+            || ground.frail
+            || ground.warp
+            || ground.lock.is_some()
+            || ground.gate.is_some_and(|(channel, _)| held(channel));
+        (!beyond).then_some(Open {
+            walker: !ground.closed_to_walkers,
+            cargo: !ground.closed_to_cargo,
+        })
+    }
+}
+
+fn ground(rules: &Rules, at: usize) -> GroundTraits {
+    let start = rules.possible_grounds(at as u16).next();
+    rules.ground_traits(start.unwrap_or(crate::level::GroundIx(0)))
+}
+
+impl Start<'_> {
+    fn of(rules: &Rules) -> Option<Start<'_>> {
+        let area = rules.size().area();
+        let world = World::of(rules);
+        let mut body = vec![None; area];
+        let position = rules.start();
+        let mut walker = None;
+        for slot in 0..rules.bodies() {
+            let traits = rules.body_traits(slot);
+            let at = usize::from(rules.anchor(&position.0, slot)?);
+            body[at] = Some(slot);
+            if traits.walker {
+                walker = Some(at);
+            } else if traits.tow || (traits.push && traits.glide) {
+                return None;
             }
         }
-    }
-    Some(area)
-}
-
-/// Cells that the box must hold: where a body may come or stands, and homes.
-fn inside(mechanics: &Mechanics, level: &Level, open: &[Open], walk: &[bool]) -> Vec<bool> {
-    let beside = |cell: Cell| {
-        Dir::ALL.iter().any(|&dir| {
-            level
-                .size
-                .neighbour(cell, dir)
-                .is_some_and(|next| walk[level.size.index(next)])
-        })
-    };
-    level
-        .size
-        .cells()
-        .enumerate()
-        .map(|(at, cell)| {
-            let home = !mechanics.ground(level.ground[at]).home.is_empty();
-            walk[at] || home || level.bodies[at].is_some() || (open[at].cargo && beside(cell))
-        })
-        .collect()
-}
-
-fn lay_out(
-    mechanics: &Mechanics,
-    level: &Level,
-    objective: &Objective<'_>,
-    open: &[Open],
-    walk: &[bool],
-    inside: &[bool],
-    walker: usize,
-) -> Option<Plan> {
-    let size = level.size;
-    let cells = || (0..size.area()).filter(|&at| inside[at]);
-    let column = |at: usize| at % size.width();
-    let row = |at: usize| at / size.width();
-    let corner = (cells().map(column).min()?, cells().map(row).min()?);
-    let width = cells().map(column).max()? - corner.0 + 1;
-    let height = cells().map(row).max()? - corner.1 + 1;
-    let number = |at: usize| (row(at) - corner.1) * width + column(at) - corner.0;
-    let pick = |wanted: &dyn Fn(usize) -> bool| {
-        cells()
-            .filter(|&at| wanted(at))
-            .map(number)
-            .collect::<Vec<_>>()
-    };
-    let ground = |at: usize| mechanics.ground(level.ground[at]);
-    let homes = pick(&|at| !ground(at).home.is_empty());
-    if homes.len() > MOST_BODIES {
-        return None;
-    }
-    let roles = |at: usize| level.bodies[at].map(|body| mechanics.body(body).role);
-    let walker_id = &mechanics.body(level.bodies[walker]?).id;
-    if objective.named.contains(&walker_id) || cells().any(|at| ground(at).home.contains(walker_id))
-    {
-        return None;
-    }
-    let mut kinds = Vec::new();
-    for (index, kind) in mechanics.bodies.iter().enumerate() {
-        let here = |at: usize| level.bodies[at].is_some_and(|body| usize::from(body.0) == index);
-        let start = pick(&|at| here(at) && roles(at) == Some(Role::Cargo));
-        if !start.is_empty() {
-            kinds.push(PlanKind {
-                start,
-                homes: pick(&|at| ground(at).home.contains(&kind.id)),
-                named: objective.named.contains(&&kind.id),
+        let mut open = Vec::with_capacity(area);
+        for at in 0..area {
+            let ground = ground(rules, at);
+            if body[at].is_some() && ground.frail {
+                return None;
+            }
+            open.push(if closed_off(rules, at) {
+                SHUT
+            } else {
+                world.open(&ground)?
             });
         }
+        let mut start = Start {
+            rules,
+            open,
+            body,
+            walker: walker?,
+            walk: vec![false; area],
+        };
+        start.flood()?;
+        Some(start)
     }
-    Some(Plan {
-        size,
-        corner,
-        width,
-        height,
-        walk: pick(&|at| walk[at]),
-        hold: pick(&|at| open[at].cargo),
-        exits: pick(&|at| ground(at).exit && walk[at]),
-        homes,
-        walker: number(walker),
-        homes_filled: objective.homes_filled,
-        walkers_out: objective.walkers_out,
-        countable: level.items.iter().all(Option::is_none),
-        kinds,
-    })
+
+    /// Fills `walk`; `None` if the walker starts where it may not enter, as it cannot come back there.
+    fn flood(&mut self) -> Option<()> {
+        if !self.open[self.walker].walker {
+            return None;
+        }
+        self.walk[self.walker] = true;
+        let mut queue = vec![self.walker];
+        while let Some(at) = queue.pop() {
+            for dir in Dir::ALL {
+                if let Some(next) = self.rules.next(at as u16, dir).map(usize::from)
+                    && self.open[next].walker
+                    && !self.walk[next]
+                    && !self.fixed(next)
+                {
+                    self.walk[next] = true;
+                    queue.push(next);
+                }
+            }
+        }
+        Some(())
+    }
+
+    /// Whether cargo stands here that stays for ever.
+    fn fixed(&self, at: usize) -> bool {
+        self.body[at].is_some_and(|slot| {
+            let traits = self.rules.body_traits(slot);
+            !traits.walker && !traits.push
+        })
+    }
+
+    fn is_home(&self, at: usize) -> bool {
+        ground(self.rules, at).home
+    }
+
+    /// Cells that the box must hold: where a body may come or stands, and homes.
+    fn inside(&self) -> Vec<usize> {
+        let beside = |at: usize| {
+            let next = |dir: Dir| self.rules.next(at as u16, dir);
+            Dir::ALL
+                .iter()
+                .any(|&dir| next(dir).is_some_and(|next| self.walk[usize::from(next)]))
+        };
+        (0..self.open.len())
+            .filter(|&at| {
+                self.walk[at]
+                    || self.is_home(at)
+                    || self.body[at].is_some()
+                    || (self.open[at].cargo && beside(at))
+            })
+            .collect()
+    }
+
+    fn lay_out(&self, objective: &Objective) -> Option<Plan> {
+        let size = self.rules.size();
+        let inside = self.inside();
+        let columns = || inside.iter().map(|at| at % size.width());
+        let rows = || inside.iter().map(|at| at / size.width());
+        let corner = (columns().min()?, rows().min()?);
+        let width = columns().max()? - corner.0 + 1;
+        let height = rows().max()? - corner.1 + 1;
+        let number =
+            |at: usize| (at / size.width() - corner.1) * width + at % size.width() - corner.0;
+        let pick = |wanted: &dyn Fn(usize) -> bool| -> Vec<usize> {
+            let cells = inside.iter().copied();
+            cells.filter(|&at| wanted(at)).map(number).collect()
+        };
+        Some(Plan {
+            size,
+            corner,
+            width,
+            height,
+            walk: pick(&|at| self.walk[at]),
+            hold: pick(&|at| self.open[at].cargo),
+            exits: pick(&|at| ground(self.rules, at).exit && self.walk[at]),
+            homes: pick(&|at| self.is_home(at)),
+            walker: number(self.walker),
+            never: objective.never,
+            homes_filled: objective.homes_filled,
+            walkers_out: objective.walkers_out,
+            countable: self.rules.items().next().is_none(),
+            kinds: self.kinds(objective, &pick)?,
+        })
+    }
+
+    /// Cargo by class; `None` if the objective asks something of walkers that this lane does not know.
+    fn kinds(
+        &self,
+        objective: &Objective,
+        pick: &dyn Fn(&dyn Fn(usize) -> bool) -> Vec<usize>,
+    ) -> Option<Vec<PlanKind>> {
+        let accepts = |at: usize, slot: usize| {
+            let kind = self.rules.body_traits(slot).kind;
+            let here = self.rules.possible_grounds(at as u16).next();
+            self.is_home(at) && here.is_some_and(|ground| self.rules.accepts(ground, kind))
+        };
+        let mut kinds = Vec::new();
+        for class in 0..self.rules.classes() {
+            let slots = self.rules.class_slots(class);
+            let first = slots.start;
+            let named = slots
+                .clone()
+                .any(|slot| objective.named.contains(&(slot as u16)));
+            let homes = pick(&|at| accepts(at, first));
+            if self.rules.body_traits(first).walker {
+                if named || !homes.is_empty() {
+                    return None;
+                }
+                continue;
+            }
+            kinds.push(PlanKind {
+                start: pick(&|at| self.body[at].is_some_and(|slot| slots.contains(&slot))),
+                homes,
+                named,
+            });
+        }
+        Some(kinds)
+    }
+}
+
+/// Whether a tile was closed (see [`Rules::closing`]): none of its neighbours leads to it.
+fn closed_off(rules: &Rules, at: usize) -> bool {
+    let cell = rules.size().cell(at);
+    let mut neighbours = Dir::ALL
+        .into_iter()
+        .filter_map(|dir| Some((rules.size().neighbour(cell, dir)?, dir)))
+        .peekable();
+    neighbours.peek().is_some()
+        && neighbours.all(|(beside, dir)| {
+            let beside = rules.size().index(beside) as u16;
+            rules.next(beside, dir.opposite()) != Some(at as u16)
+        })
 }

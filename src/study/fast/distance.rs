@@ -53,11 +53,6 @@ impl<const N: usize> Distances<N> {
         distances
     }
 
-    /// Number of homes, the length of a row.
-    pub fn homes(&self) -> usize {
-        self.homes
-    }
-
     /// Number of sides of a cell.
     pub fn side_count(&self, at: usize) -> usize {
         usize::from(self.sides[at])
@@ -81,13 +76,6 @@ impl<const N: usize> Distances<N> {
     pub fn row(&self, group: usize, at: usize, side: usize) -> &[u16] {
         let begin = (at * 4 + side) * self.homes;
         &self.far[group][begin..begin + self.homes]
-    }
-
-    /// Bytes held.
-    pub fn bytes(&self) -> usize {
-        self.far.iter().map(|far| far.len() * 2).sum::<usize>()
-            + self.parts.len() * size_of::<Bits<N>>()
-            + self.sides.len() * 9
     }
 
     fn split(&mut self, board: &Board<N>, at: usize, next: &[u16; 4]) {
@@ -143,7 +131,11 @@ impl<const N: usize> Distances<N> {
                 let state = queue[head] as usize;
                 head += 1;
                 let far = plain[state * self.homes + column];
-                for from in self.pulled(board, next, stands, state).into_iter().flatten() {
+                for from in self
+                    .pulled(board, next, stands, state)
+                    .into_iter()
+                    .flatten()
+                {
                     let entry = &mut plain[from * self.homes + column];
                     if *entry == NEVER {
                         *entry = far + 1;

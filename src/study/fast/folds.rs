@@ -59,9 +59,8 @@ pub(super) fn count<const N: usize>(
         counts.alive += u64::from(lives);
         counts.commitments += leaving.len() as u64;
         if lives {
-            let lost = |&&(target, _): &&(u32, u16)| {
-                !alive[components.of[target as usize] as usize]
-            };
+            let lost =
+                |&&(target, _): &&(u32, u16)| !alive[components.of[target as usize] as usize];
             counts.traps += leaving.iter().filter(lost).count() as u64;
         }
         alive.push(lives);
@@ -87,7 +86,8 @@ impl Fold {
         leaving: &mut Vec<(u32, u16)>,
     ) -> Fold {
         leaving.clear();
-        let members = components.begin[component] as usize..components.begin[component + 1] as usize;
+        let members =
+            components.begin[component] as usize..components.begin[component + 1] as usize;
         let mut fold = Fold {
             finished: false,
             may_repeat: members.len() > 1,

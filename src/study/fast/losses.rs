@@ -133,11 +133,9 @@ impl<const N: usize> Board<N> {
         let mut frozen = all;
         loop {
             let (behind, before) = (self.walk & !frozen, open & !frozen);
-            let moves = Dir::ALL
-                .iter()
-                .fold(Bits::NONE, |moves, &dir| {
-                    moves | (self.shift(behind, dir) & self.shift(before, dir.opposite()))
-                });
+            let moves = Dir::ALL.iter().fold(Bits::NONE, |moves, &dir| {
+                moves | (self.shift(behind, dir) & self.shift(before, dir.opposite()))
+            });
             // A member on ground that the walker cannot enter is never pushed.
             let left = frozen & !(moves & self.walk);
             if !left.has(at) {

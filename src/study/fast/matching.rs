@@ -64,7 +64,9 @@ impl Demand {
             .map(|group| board.groups.start[group].count() as usize)
             .sum();
         let homes = board.homes.count() as usize;
-        let possible = if board.homes_filled {
+        let possible = if board.never {
+            false
+        } else if board.homes_filled {
             rows >= homes
         } else {
             homes >= rows

@@ -27,7 +27,7 @@ impl<'a> Meter<'a> {
         Meter {
             limits,
             started: Instant::now(),
-            left: 1,
+            left: 0,
             positions: 0,
             bytes_aside: 0,
             bytes_peak: 0,

@@ -29,7 +29,6 @@ mod steps;
 mod store;
 
 use super::{Limits, MapCounts, Prove, Report, UndecidedReason, Watch};
-use crate::level::{Level, Mechanics};
 use crate::rules::Rules;
 use board::Board;
 
@@ -77,9 +76,9 @@ pub struct Closed {
 }
 
 impl FastLevel {
-    /// Compiles a level that [`Rules::compile`] accepts, or says by `None` that a trait is in play that this lane does not know.
-    pub fn compile(mechanics: &Mechanics, level: &Level) -> Option<FastLevel> {
-        let plan = compile::plan(mechanics, level)?;
+    /// Compiles a level, or says by `None` that a trait is in play that this lane does not know.
+    pub fn compile(rules: &Rules) -> Option<FastLevel> {
+        let plan = compile::plan(rules)?;
         let lane = match plan.width * plan.height {
             0..=64 => Lane::W1(Box::new(Board::new(&plan))),
             65..=128 => Lane::W2(Box::new(Board::new(&plan))),
@@ -124,7 +123,10 @@ fn close<const N: usize>(board: &Board<N>, limits: &Limits) -> Result<Closed, Un
     let counts = folds::count(&closure, &mut meter)?;
     let mut heat = heat::Heat::default();
     for node in 0..closure.store.nodes() as u32 {
-        heat.add(Board::all(closure.store.cargo(node)), closure.store.cells(node));
+        heat.add(
+            Board::all(closure.store.cargo(node)),
+            closure.store.cells(node),
+        );
     }
     Ok(Closed {
         counts,

@@ -271,8 +271,7 @@ impl<'b, const N: usize> PushSearch<'b, N> {
         let all = Board::all(cargo);
         let done = self.board.cargo_done(&self.board.groups, cargo);
         let roam = self.board.roam(all, done, usize::from(node.at));
-        node.finished =
-            roam.finished || (done && self.board.ways_out(all, roam.cells).any());
+        node.finished = roam.finished || (done && self.board.ways_out(all, roam.cells).any());
         let id = self.store.add_node(set, roam.cells);
         meter.positions += u64::from(roam.cells.count());
         self.nodes.push(node);

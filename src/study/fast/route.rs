@@ -72,7 +72,10 @@ pub(super) fn steps_of<const N: usize>(
 
 /// Plays a route by the plain rules of this lane and cuts it off at the first finished position. The number of pushes and the
 /// lengths of the spans up to and with each push, or `None` if a step does nothing or the end is not finished.
-pub(super) fn walked<const N: usize>(board: &Board<N>, steps: &mut Vec<Dir>) -> Option<(u32, Vec<u32>)> {
+pub(super) fn walked<const N: usize>(
+    board: &Board<N>,
+    steps: &mut Vec<Dir>,
+) -> Option<(u32, Vec<u32>)> {
     let mut cargo = board.groups.start.clone();
     let mut at = board.walker;
     let mut spans = vec![0];

@@ -328,10 +328,8 @@ impl<'b, const N: usize> StepSearch<'b, N> {
 
     fn make_room(&mut self, meter: &Meter) -> Result<(), UndecidedReason> {
         let extra = 4 * self.board.groups.start.iter().map(Bits::count).sum::<u32>() as usize;
-        let beside = held(&self.waves)
-            + held(&self.arrivals)
-            + self.arriving.bytes()
-            + self.fronts.bytes();
+        let beside =
+            held(&self.waves) + held(&self.arrivals) + self.arriving.bytes() + self.fronts.bytes();
         self.store
             .make_room(extra, |store| meter.spare(store.bytes() + beside))?;
         let spare = meter.spare(self.bytes());

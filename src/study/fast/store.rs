@@ -152,7 +152,11 @@ impl<const N: usize> Store<N> {
         let roomy = self.heads.capacity() - self.heads.len() >= extra
             && self.cells.capacity() - self.cells.len() >= extra
             && (self.heads.len() + extra) * 3 <= self.table.len() * 2;
-        if roomy { Ok(()) } else { self.grow(extra, spare) }
+        if roomy {
+            Ok(())
+        } else {
+            self.grow(extra, spare)
+        }
     }
 
     fn grow(
