@@ -27,6 +27,7 @@ pub struct Desk {
     pictures: Pictures,
     worker: Worker,
     job: Option<Receiver<FileNews>>,
+    picker: Option<Receiver<FileNews>>,
     waiting: VecDeque<Effect>,
     keeper: super::keeper::Keeper,
     theme: Option<ThemeChoice>,
@@ -45,6 +46,7 @@ impl Desk {
             pictures: Pictures::default(),
             worker: Worker::start(move || wake.request_repaint()),
             job: None,
+            picker: None,
             waiting: VecDeque::new(),
             keeper: super::keeper::Keeper::none(),
             theme: None,
@@ -107,24 +109,27 @@ impl Desk {
         while let Ok(event) = self.worker.events().try_recv() {
             self.state.hear(event);
         }
-        let Some(job) = &self.job else {
-            return;
-        };
-        match job.try_recv() {
-            Ok(news) => {
-                self.job = None;
-                self.state.hear_file(news);
-                ctx.request_repaint();
+        for from_picker in [false, true] {
+            let slot = if from_picker {
+                &mut self.picker
+            } else {
+                &mut self.job
+            };
+            let heard = slot.as_ref().map(Receiver::try_recv);
+            match heard {
+                Some(Ok(news)) => {
+                    *slot = None;
+                    self.state.hear_file(news);
+                    ctx.request_repaint();
+                }
+                Some(Err(TryRecvError::Disconnected)) => {
+                    *slot = None;
+                    self.state.after_unsaved = None;
+                    let text = "The file was not read or written.".to_owned();
+                    self.state.say_fault("Something went wrong", text);
+                }
+                Some(Err(TryRecvError::Empty)) | None => {}
             }
-            Err(TryRecvError::Disconnected) => {
-                self.job = None;
-                self.state.after_unsaved = None;
-                self.state.say_fault(
-                    "Something went wrong",
-                    "The file was not read or written.".to_owned(),
-                );
-            }
-            Err(TryRecvError::Empty) => {}
         }
     }
 
@@ -149,8 +154,9 @@ impl Desk {
             && !self.had_focus
             && self.job.is_none()
             && let Some(path) = self.state.path.clone()
+            && let Some(print) = self.state.saved.print.clone()
         {
-            self.start(ctx, move || jobs::look(path));
+            self.start(ctx, move || jobs::look(path, &print));
         }
         self.had_focus = focused;
     }
@@ -181,7 +187,7 @@ impl Desk {
         Panel::left("tray")
             .frame(frame(12, 4))
             .resizable(false)
-            .exact_size(if wide { 190.0 } else { 146.0 })
+            .exact_size(if wide { 194.0 } else { 142.0 })
             .show(ui, |ui| tray::show(ui, state, pictures, actions));
         Panel::right("findings")
             .frame(frame(10, 6))
@@ -222,13 +228,13 @@ impl Desk {
     fn perform(&mut self, ctx: &Context) {
         self.waiting.extend(std::mem::take(&mut self.state.effects));
         while let Some(effect) = self.waiting.pop_front() {
-            let is_for_disk = !matches!(effect, Effect::Ask(_));
+            let is_for_disk = !is_aside(&effect);
             if is_for_disk && self.job.is_some() {
                 // What concerns the disk keeps its order behind the job that runs; questions to the worker go ahead.
                 let (ask, later): (Vec<Effect>, Vec<Effect>) = self
                     .waiting
                     .drain(..)
-                    .partition(|effect| matches!(effect, Effect::Ask(_)));
+                    .partition(is_aside);
                 for effect in ask {
                     self.perform_one(ctx, effect);
                 }
@@ -250,9 +256,9 @@ impl Desk {
                 let pack = self.state.pack.clone();
                 let preamble = self.state.preamble.clone();
                 let is_ours = self.state.path.as_ref() == Some(&path);
-                let expected = self.state.saved.print.filter(|_| is_ours);
+                let expected = self.state.saved.print.clone().filter(|_| is_ours);
                 self.start(ctx, move || {
-                    jobs::write(path, pack, &preamble, expected, force)
+                    jobs::write(path, pack, &preamble, expected.as_ref(), force)
                 });
             }
             Effect::ReadRecovery => {
@@ -261,7 +267,10 @@ impl Desk {
             }
             Effect::DropRecovery => self.keeper.drop_left_behind(),
             Effect::ForgetAutosave => self.keeper.forget_autosave(),
-            Effect::KeepSettings => self.keeper.keep_settings(&self.state.settings),
+            Effect::KeepSettings => {
+                let work = self.keeper.keep(&self.state.settings);
+                self.start(ctx, work);
+            }
             Effect::Close => {
                 self.keeper.forget_autosave();
                 self.may_close = true;
@@ -271,6 +280,11 @@ impl Desk {
     }
 
     fn pick(&mut self, ctx: &Context, purpose: PathPurpose) {
+        if self.picker.is_some() {
+            // The system's dialog is open already, or hangs: the window's own can be had all the same.
+            self.state.ask_path(purpose);
+            return;
+        }
         let folder = self
             .state
             .path
@@ -288,7 +302,9 @@ impl Desk {
                 super::execute::file_stem(&self.state.pack.name)
             ),
         };
-        self.start(ctx, move || jobs::pick(purpose, folder, name));
+        let wake = ctx.clone();
+        let work = move || jobs::pick(purpose, folder, name);
+        self.picker = Some(run_aside(work, move || wake.request_repaint()));
     }
 
     fn set_title(&mut self, ctx: &Context) {
@@ -299,4 +315,12 @@ impl Desk {
             self.title = title;
         }
     }
+}
+
+/// Whether an effect needs no turn among those that concern the disk.
+fn is_aside(effect: &Effect) -> bool {
+    matches!(
+        effect,
+        Effect::Ask(_) | Effect::PickToOpen | Effect::PickToSave
+    )
 }

@@ -87,7 +87,7 @@ impl State {
             Action::CreatePack { ref name } if !self.asks_first(&action) => {
                 self.create_pack(name.clone());
             }
-            Action::Quit if !self.asks_first(&action) => self.effects.push(Effect::Close),
+            Action::Quit if !self.asks_first(&action) => self.close(),
             Action::Save => match self.path.clone() {
                 Some(path) => self.write(path, false),
                 None => self.effects.push(Effect::PickToSave),
@@ -149,9 +149,14 @@ impl State {
             Action::Open => self.effects.push(Effect::PickToOpen),
             Action::OpenPath(path) => self.effects.push(Effect::Read(path)),
             Action::CreatePack { name } => self.create_pack(name),
-            Action::Quit => self.effects.push(Effect::Close),
+            Action::Quit => self.close(),
             other => self.execute(other),
         }
+    }
+
+    fn close(&mut self) {
+        self.effects.push(Effect::KeepSettings);
+        self.effects.push(Effect::Close);
     }
 
     fn write(&mut self, path: PathBuf, force: bool) {

@@ -2,38 +2,13 @@
 
 use super::action::Action;
 use super::state::{Dialog, Effect, PathPurpose, State};
-use crate::file::ReadPack;
+use crate::file::{Fingerprint, Opened, ReadPack};
 use crate::level::Pack;
-use std::hash::Hasher;
 use std::path::{Path, PathBuf};
 use std::sync::Arc;
 
 /// The most packs that are kept in the list of recent ones.
 const MOST_RECENT: usize = 12;
-
-/// What a file held when it was read or written, to notice when something else changes it.
-#[derive(Clone, Copy, Debug, PartialEq, Eq)]
-pub struct FilePrint {
-    bytes: u64,
-    hash: u64,
-}
-
-impl FilePrint {
-    /// The print of a file with this content.
-    pub fn of(content: &[u8]) -> FilePrint {
-        let mut hasher = rustc_hash::FxHasher::default();
-        hasher.write(content);
-        FilePrint {
-            bytes: content.len() as u64,
-            hash: hasher.finish(),
-        }
-    }
-
-    /// Length of the file, in bytes.
-    pub fn bytes(&self) -> u64 {
-        self.bytes
-    }
-}
 
 /// Why a pack was not written.
 #[derive(Clone, Debug, PartialEq, Eq)]
@@ -42,6 +17,17 @@ pub enum SaveFault {
     Changed,
     /// The disk refused, in words.
     Refused(String),
+}
+
+/// What another program did to the pack's file.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub enum Change {
+    /// Nothing that can be seen.
+    None,
+    /// It holds something else now.
+    Content(Fingerprint),
+    /// It took it away.
+    Gone,
 }
 
 /// What came of a job on disk.
@@ -61,7 +47,7 @@ pub enum FileNews {
         /// From where.
         path: PathBuf,
         /// What it held, or what is wrong with it.
-        result: Result<Box<(ReadPack, FilePrint)>, String>,
+        result: Result<Box<Opened>, String>,
     },
     /// A pack was written.
     Saved {
@@ -70,14 +56,14 @@ pub enum FileNews {
         /// What was written.
         pack: Pack,
         /// The file's print now.
-        result: Result<FilePrint, SaveFault>,
+        result: Result<Fingerprint, SaveFault>,
     },
-    /// The file was looked at. None: it is gone.
+    /// The file was looked at.
     Looked {
         /// Which.
         path: PathBuf,
-        /// Its print.
-        print: Option<FilePrint>,
+        /// What another program did to it.
+        change: Change,
     },
     /// An autosave was left behind by a session that did not end well.
     LeftBehind {
@@ -112,7 +98,7 @@ impl State {
         &mut self,
         pack: Pack,
         path: Option<PathBuf>,
-        print: Option<FilePrint>,
+        print: Option<Fingerprint>,
         preamble: String,
     ) {
         let mut fresh = State::new(pack, path, self.settings.clone());
@@ -149,7 +135,7 @@ impl State {
             FileNews::Picked { path: None, .. } => self.after_unsaved = None,
             FileNews::Loaded { path, result } => self.hear_loaded(path, result),
             FileNews::Saved { path, pack, result } => self.hear_saved(path, pack, result),
-            FileNews::Looked { path, print } => self.hear_look(&path, print),
+            FileNews::Looked { path, change } => self.hear_look(&path, change),
             FileNews::LeftBehind { about } => self.dialog = Some(Dialog::Recovery { about }),
             FileNews::Recovered { path, result } => self.hear_recovered(path, result),
             FileNews::Done(said) => {
@@ -160,15 +146,12 @@ impl State {
         }
     }
 
-    fn hear_loaded(&mut self, path: PathBuf, result: Result<Box<(ReadPack, FilePrint)>, String>) {
-        let (read, print) = match result {
-            Ok(read) => *read,
+    fn hear_loaded(&mut self, path: PathBuf, result: Result<Box<Opened>, String>) {
+        let Opened { read, fingerprint } = match result {
+            Ok(opened) => *opened,
             Err(fault) => {
-                log::warn!(target: "foldwright::file", "refused {}", path.display());
-                self.say_fault(
-                    "This pack can't be opened",
-                    format!("{}:{fault}", path.display()),
-                );
+                log::warn!(target: "foldwright::file", "refused {fault}");
+                self.say_fault("This pack can't be opened", fault);
                 return;
             }
         };
@@ -185,12 +168,14 @@ impl State {
             self.put_on_desk(
                 read.pack.clone(),
                 Some(path.clone()),
-                Some(print),
+                Some(fingerprint.clone()),
                 String::new(),
             );
         }
         self.preamble = read.preamble.clone();
-        self.note_on_disk(print);
+        self.saved.pack = self.pack.clone();
+        self.saved.print = Some(fingerprint);
+        self.saved.never = false;
         self.remember_recent(&path);
         self.said = format!("opened {}", path.display());
         self.tell_of_faults(&path, &read);
@@ -221,18 +206,20 @@ impl State {
         }
     }
 
-    fn hear_saved(&mut self, path: PathBuf, pack: Pack, result: Result<FilePrint, SaveFault>) {
+    fn hear_saved(&mut self, path: PathBuf, pack: Pack, result: Result<Fingerprint, SaveFault>) {
         match result {
             Ok(print) => {
                 log::info!(
                     target: "foldwright::file",
                     "saved {} bytes {}",
                     path.display(),
-                    print.bytes()
+                    print.bytes
                 );
                 self.said = format!("saved {}", path.display());
                 self.saved.pack = pack;
+                self.saved.never = false;
                 self.saved.print = Some(print);
+                self.saved.told = None;
                 self.remember_recent(&path);
                 self.path = Some(path);
                 self.effects.push(Effect::ForgetAutosave);
@@ -258,17 +245,20 @@ impl State {
         }
     }
 
-    fn hear_look(&mut self, path: &Path, print: Option<FilePrint>) {
-        let ours = self.path.as_deref() == Some(path) && self.saved.print.is_some();
-        if !ours || self.dialog.is_some() || self.saved.print == print {
+    fn hear_look(&mut self, path: &Path, change: Change) {
+        let ours = self.path.as_deref() == Some(path);
+        if !ours || self.dialog.is_some() {
             return;
         }
-        match print {
-            // Told once: from now on this is what the file is known to be, and saving over it was asked about.
-            Some(_) => {
+        match change {
+            Change::None => {}
+            // Each change is told once; saving asks again all the same.
+            Change::Content(now) if self.saved.told.as_ref() == Some(&now) => {}
+            Change::Content(now) => {
+                self.saved.told = Some(now);
                 self.dialog = Some(Dialog::ChangedOnDisk { saving_to: None });
             }
-            None => self.said = "the pack's file is gone; save to write it again".to_owned(),
+            Change::Gone => self.said = "the pack's file is gone; save to write it again".to_owned(),
         }
     }
 
@@ -277,17 +267,11 @@ impl State {
             Ok(read) => {
                 log::info!(target: "foldwright::file", "recovered levels {}", read.pack.levels.len());
                 self.put_on_desk(read.pack, path, None, read.preamble);
-                // What is on disk is not what is on the desk.
-                self.saved.pack.name.push('\u{0}');
+                self.saved.never = true;
                 self.said = "recovered what was not saved".to_owned();
             }
             Err(fault) => self.say_fault("The autosave can't be read", fault),
         }
-    }
-
-    fn note_on_disk(&mut self, print: FilePrint) {
-        self.saved.pack = self.pack.clone();
-        self.saved.print = Some(print);
     }
 
     fn remember_recent(&mut self, path: &Path) {
@@ -329,12 +313,5 @@ mod tests {
         check("a/night", "a/night.pack.ron");
         check("a/night.pack.ron", "a/night.pack.ron");
         check("a/night.ron", "a/night.ron");
-    }
-
-    #[test]
-    fn a_print_tells_other_content_apart() {
-        assert_eq!(FilePrint::of(b"one"), FilePrint::of(b"one"));
-        assert_ne!(FilePrint::of(b"one"), FilePrint::of(b"two"));
-        assert_ne!(FilePrint::of(b""), FilePrint::of(b"\0"));
     }
 }

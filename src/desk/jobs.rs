@@ -1,11 +1,12 @@
 //! What is done beside the window: choosing, reading and writing files. Each job is a function from what it needs to its
-//! [`FileNews`]; the app runs one at a time on a thread of the worker, so that the window never waits for a disk.
+//! [`FileNews`]; the app runs one at a time on a thread of its own, so that the window never waits for a disk.
 
-use super::files::{FileNews, FilePrint, SaveFault};
+use super::files::{Change, FileNews, SaveFault};
 use super::state::PathPurpose;
-use crate::file;
+use crate::file::{Fingerprint, fingerprint, open_pack, save_pack};
 use crate::level::Pack;
-use std::path::{Path, PathBuf};
+use std::io::ErrorKind;
+use std::path::PathBuf;
 use std::time::{Duration, Instant};
 
 /// A dialog that is over sooner than this, without a choice, was never on the screen: nobody is that fast.
@@ -35,55 +36,40 @@ pub fn pick(purpose: PathPurpose, folder: Option<PathBuf>, name: String) -> File
 
 /// Reads a pack.
 pub fn read(path: PathBuf) -> FileNews {
-    let result = std::fs::read(&path)
-        .map_err(|fault| format!(" {fault}"))
-        .and_then(|content| {
-            let print = FilePrint::of(&content);
-            file::read_pack(&content)
-                .map(|read| Box::new((read, print)))
-                .map_err(|fault| fault.to_string())
-        });
+    let result = open_pack(&path)
+        .map(Box::new)
+        .map_err(|fault| fault.to_string());
     FileNews::Loaded { path, result }
 }
 
-/// Writes a pack, unless the file is not what `expected` says and `force` is off.
+/// Writes a pack. Without `force`, a file that is not what `expected` says is left alone.
 pub fn write(
     path: PathBuf,
     pack: Pack,
     preamble: &str,
-    expected: Option<FilePrint>,
+    expected: Option<&Fingerprint>,
     force: bool,
 ) -> FileNews {
-    let result = if !force && look_at(&path).is_some_and(|now| Some(now) != expected) {
-        Err(SaveFault::Changed)
+    let known = match expected {
+        // A file that is gone or can't be read is not overwritten by mistake; saving will say what is wrong.
+        Some(print) => print.still_holds(&path).unwrap_or(true),
+        None => !path.exists(),
+    };
+    let result = if known || force {
+        save_pack(&path, &pack, preamble).map_err(|fault| SaveFault::Refused(fault.to_string()))
     } else {
-        let text = file::write_pack(&pack, preamble);
-        save_atomic(&path, &text)
-            .map(|()| FilePrint::of(text.as_bytes()))
-            .map_err(|fault| SaveFault::Refused(fault.to_string()))
+        Err(SaveFault::Changed)
     };
     FileNews::Saved { path, pack, result }
 }
 
 /// Looks whether a file is still what it was.
-pub fn look(path: PathBuf) -> FileNews {
-    let print = look_at(&path);
-    FileNews::Looked { path, print }
-}
-
-fn look_at(path: &Path) -> Option<FilePrint> {
-    std::fs::read(path)
-        .ok()
-        .map(|content| FilePrint::of(&content))
-}
-
-fn save_atomic(path: &Path, text: &str) -> std::io::Result<()> {
-    use std::io::Write;
-    let folder = path
-        .parent()
-        .filter(|folder| !folder.as_os_str().is_empty());
-    let mut new = tempfile::NamedTempFile::new_in(folder.unwrap_or(Path::new(".")))?;
-    new.write_all(text.as_bytes())?;
-    new.as_file().sync_all()?;
-    new.persist(path).map(drop).map_err(|fault| fault.error)
+pub fn look(path: PathBuf, print: &Fingerprint) -> FileNews {
+    let change = match print.still_holds(&path) {
+        Ok(true) => Change::None,
+        Ok(false) => fingerprint(&path).map_or(Change::None, Change::Content),
+        Err(fault) if fault.kind() == ErrorKind::NotFound => Change::Gone,
+        Err(_) => Change::None,
+    };
+    FileNews::Looked { path, change }
 }

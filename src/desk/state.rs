@@ -289,7 +289,11 @@ pub struct Saved {
     /// The pack when it was last read or written.
     pub pack: Pack,
     /// The fingerprint of the file then; none if it has no file.
-    pub print: Option<super::files::FilePrint>,
+    pub print: Option<crate::file::Fingerprint>,
+    /// What another program made of the file, if the user was told.
+    pub told: Option<crate::file::Fingerprint>,
+    /// Whether what is on the desk was never on disk, whatever `pack` says: it was recovered.
+    pub never: bool,
 }
 
 /// All that the desk knows.
@@ -363,6 +367,8 @@ impl State {
             saved: Saved {
                 pack: pack.clone(),
                 print: None,
+                told: None,
+                never: false,
             },
             preamble: String::new(),
             pack,
@@ -412,7 +418,7 @@ impl State {
 
     /// Whether there are changes that are not on disk.
     pub fn is_dirty(&self) -> bool {
-        self.pack != self.saved.pack
+        self.saved.never || self.pack != self.saved.pack
     }
 
     /// Whether the brush paints a kind that the pack does not have.

@@ -4,29 +4,49 @@ use super::action::Action;
 use super::keys::{key_text, number_key_text};
 use super::pictures::{Kind, Pictures};
 use super::state::{Brush, ShowFlag, State, Tool};
+use super::stroke::brush_label;
 use super::theme::{Theme, section};
 use super::traits::describe;
 use crate::level::{BodyIx, GroundIx, ItemIx};
+use egui::text::LayoutJob;
 use egui::{
-    Align2, Button, Color32, FontId, Rect, Response, Role, ScrollArea, Sense, StrokeKind,
-    TextStyle, Ui, WidgetInfo, vec2,
+    Align, Button, Color32, FontId, Frame, Galley, Margin, Panel, Rect, Response, Role, ScrollArea, Sense, StrokeKind,
+    TextStyle, Ui, Vec2, WidgetInfo, vec2,
 };
+use std::sync::Arc;
 
 /// Side of a picture in the tray, in points.
 const PICTURE: f32 = 38.0;
 
-/// Draws the tray and pushes what was chosen.
+/// Below this height, in points, the tray scrolls as a whole.
+const LEAST_HEIGHT: f32 = 420.0;
+
+/// Draws the tray and pushes what was chosen. Brush and overlays stay in sight while the kinds scroll, where there is room.
 pub fn show(ui: &mut Ui, state: &State, pictures: &mut Pictures, actions: &mut Vec<Action>) {
+    let roomy = ui.available_height() >= LEAST_HEIGHT;
+    if roomy {
+        Panel::bottom("tray-tools")
+            .frame(Frame::new().inner_margin(Margin::symmetric(0, 4)))
+            .resizable(false)
+            .show(ui, |ui| tools_and_overlays(ui, state, actions));
+    }
     ScrollArea::vertical().auto_shrink(false).show(ui, |ui| {
         ui.add_space(4.0);
         kinds(ui, state, pictures, actions);
-        section(ui, "Brush");
-        tools(ui, state, actions);
-        ui.add_space(8.0);
-        section(ui, "Show");
-        overlays(ui, state, actions);
-        ui.add_space(6.0);
+        if !roomy {
+            tools_and_overlays(ui, state, actions);
+        }
     });
+}
+
+fn tools_and_overlays(ui: &mut Ui, state: &State, actions: &mut Vec<Action>) {
+    ui.add_space(2.0);
+    section(ui, "Brush");
+    tools(ui, state, actions);
+    ui.add_space(6.0);
+    section(ui, "Show");
+    overlays(ui, state, actions);
+    ui.add_space(4.0);
 }
 
 fn kinds(ui: &mut Ui, state: &State, pictures: &mut Pictures, actions: &mut Vec<Action>) {
@@ -62,14 +82,20 @@ fn grid(
     actions: &mut Vec<Action>,
 ) {
     let room = ui.available_width();
-    let columns = (room / 54.0).floor().max(1.0) as usize;
+    let columns = (room / 52.0).floor().max(1.0) as usize;
     let width = room / columns as f32;
     for (row, line) in brushes.chunks(columns).enumerate() {
+        let labels: Vec<Arc<Galley>> = line
+            .iter()
+            .map(|&brush| label_galley(ui, state, brush, width - 3.0))
+            .collect();
+        let tallest = labels.iter().map(|label| label.size().y).fold(0.0, f32::max);
         ui.horizontal(|ui| {
             ui.spacing_mut().item_spacing.x = 0.0;
-            for (column, &brush) in line.iter().enumerate() {
+            for (column, (&brush, label)) in line.iter().zip(labels).enumerate() {
                 let nth = first_nth + row * columns + column;
-                let response = kind_button(ui, state, pictures, brush, width);
+                let size = vec2(width, PICTURE + tallest + 7.0);
+                let response = kind_button(ui, state, pictures, brush, label, size);
                 if hinted(response, state, brush, nth).clicked() {
                     actions.push(Action::ChooseBrush(brush));
                 }
@@ -78,23 +104,39 @@ fn grid(
     }
 }
 
+/// The label of a kind in at most two lines, centred about 0.
+fn label_galley(ui: &Ui, state: &State, brush: Brush, width: f32) -> Arc<Galley> {
+    let theme = Theme::of(ui);
+    let colour = if state.brush == brush { theme.text } else { theme.muted };
+    let label = brush_label(state.mechanics(), brush).to_owned();
+    let font = FontId::new(10.5, TextStyle::Small.resolve(ui.style()).family);
+    let mut job = LayoutJob::simple(label, font, colour, width);
+    job.halign = Align::Center;
+    job.wrap.max_rows = 2;
+    job.wrap.break_anywhere = false;
+    ui.painter().layout_job(job)
+}
+
 fn kind_button(
     ui: &mut Ui,
     state: &State,
     pictures: &mut Pictures,
     brush: Brush,
-    width: f32,
+    label: Arc<Galley>,
+    size: Vec2,
 ) -> Response {
     let theme = Theme::of(ui);
-    let label = super::stroke::brush_label(state.mechanics(), brush).to_owned();
-    let (rect, response) = ui.allocate_exact_size(vec2(width, PICTURE + 24.0), Sense::click());
+    let (rect, response) = ui.allocate_exact_size(size, Sense::click());
     let chosen = state.brush == brush;
-    response.widget_info(|| WidgetInfo::selected(Role::RadioButton, true, chosen, &label));
+    response.widget_info(|| {
+        let label = brush_label(state.mechanics(), brush);
+        WidgetInfo::selected(Role::RadioButton, true, chosen, label)
+    });
     if !ui.is_rect_visible(rect) {
         return response;
     }
     let picture = Rect::from_center_size(
-        rect.center_top() + vec2(0.0, PICTURE / 2.0 + 4.0),
+        rect.center_top() + vec2(0.0, PICTURE / 2.0 + 3.0),
         vec2(PICTURE, PICTURE),
     );
     let painter = ui.painter();
@@ -104,63 +146,20 @@ fn kind_button(
     if let Some(kind) = Kind::of(brush) {
         pictures.paint(painter, picture, kind, Color32::WHITE);
     }
+    let frame = picture.expand(3.0);
     if chosen {
-        painter.rect_stroke(
-            picture.expand(3.0),
-            5.0,
-            (2.0, theme.amber),
-            StrokeKind::Middle,
-        );
+        painter.rect_stroke(frame, 5.0, (2.0, theme.amber), StrokeKind::Middle);
     } else if response.hovered() || response.has_focus() {
-        painter.rect_stroke(
-            picture.expand(3.0),
-            5.0,
-            (1.0, theme.line),
-            StrokeKind::Middle,
-        );
+        painter.rect_stroke(frame, 5.0, (1.0, theme.line), StrokeKind::Middle);
     }
-    let colour = if chosen { theme.text } else { theme.muted };
-    let font = FontId::new(10.5, TextStyle::Small.resolve(ui.style()).family);
-    let text = fitting(ui, &label, &font, width - 2.0);
-    painter.text(
-        rect.center_bottom() - vec2(0.0, 1.0),
-        Align2::CENTER_BOTTOM,
-        text,
-        font,
-        colour,
-    );
+    let below = picture.center_bottom() + vec2(0.0, 4.0);
+    painter.galley(below, label, theme.text);
     response
-}
-
-/// The text, cut with an ellipsis if it is wider than `width`.
-fn fitting(ui: &Ui, text: &str, font: &FontId, width: f32) -> String {
-    let measure = |text: String| {
-        ui.painter()
-            .layout_no_wrap(text, font.clone(), Color32::WHITE)
-            .size()
-            .x
-    };
-    if measure(text.to_owned()) <= width {
-        return text.to_owned();
-    }
-    let letters: Vec<char> = text.chars().collect();
-    (1..letters.len())
-        .rev()
-        .map(|end| {
-            letters[..end]
-                .iter()
-                .collect::<String>()
-                .trim_end()
-                .to_owned()
-                + "…"
-        })
-        .find(|cut| measure(cut.clone()) <= width)
-        .unwrap_or_default()
 }
 
 fn hinted(response: Response, state: &State, brush: Brush, nth: usize) -> Response {
     response.on_hover_ui(|ui| {
-        let label = super::stroke::brush_label(state.mechanics(), brush);
+        let label = brush_label(state.mechanics(), brush);
         match number_key_text(nth) {
             Some(key) => ui.strong(format!("{label}  ({key})")),
             None => ui.strong(label),
