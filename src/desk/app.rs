@@ -231,10 +231,8 @@ impl Desk {
             let is_for_disk = !is_aside(&effect);
             if is_for_disk && self.job.is_some() {
                 // What concerns the disk keeps its order behind the job that runs; questions to the worker go ahead.
-                let (ask, later): (Vec<Effect>, Vec<Effect>) = self
-                    .waiting
-                    .drain(..)
-                    .partition(is_aside);
+                let (ask, later): (Vec<Effect>, Vec<Effect>) =
+                    self.waiting.drain(..).partition(is_aside);
                 for effect in ask {
                     self.perform_one(ctx, effect);
                 }

@@ -258,7 +258,9 @@ impl State {
                 self.saved.told = Some(now);
                 self.dialog = Some(Dialog::ChangedOnDisk { saving_to: None });
             }
-            Change::Gone => self.said = "the pack's file is gone; save to write it again".to_owned(),
+            Change::Gone => {
+                self.said = "the pack's file is gone; save to write it again".to_owned()
+            }
         }
     }
 

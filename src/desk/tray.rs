@@ -10,8 +10,8 @@ use super::traits::describe;
 use crate::level::{BodyIx, GroundIx, ItemIx};
 use egui::text::LayoutJob;
 use egui::{
-    Align, Button, Color32, FontId, Frame, Galley, Margin, Panel, Rect, Response, Role, ScrollArea, Sense, StrokeKind,
-    TextStyle, Ui, Vec2, WidgetInfo, vec2,
+    Align, Button, Color32, FontId, Frame, Galley, Margin, Panel, Rect, Response, Role, ScrollArea,
+    Sense, StrokeKind, TextStyle, Ui, Vec2, WidgetInfo, vec2,
 };
 use std::sync::Arc;
 
@@ -89,7 +89,10 @@ fn grid(
             .iter()
             .map(|&brush| label_galley(ui, state, brush, width - 3.0))
             .collect();
-        let tallest = labels.iter().map(|label| label.size().y).fold(0.0, f32::max);
+        let tallest = labels
+            .iter()
+            .map(|label| label.size().y)
+            .fold(0.0, f32::max);
         ui.horizontal(|ui| {
             ui.spacing_mut().item_spacing.x = 0.0;
             for (column, (&brush, label)) in line.iter().zip(labels).enumerate() {
@@ -107,7 +110,11 @@ fn grid(
 /// The label of a kind in at most two lines, centred about 0.
 fn label_galley(ui: &Ui, state: &State, brush: Brush, width: f32) -> Arc<Galley> {
     let theme = Theme::of(ui);
-    let colour = if state.brush == brush { theme.text } else { theme.muted };
+    let colour = if state.brush == brush {
+        theme.text
+    } else {
+        theme.muted
+    };
     let label = brush_label(state.mechanics(), brush).to_owned();
     let font = FontId::new(10.5, TextStyle::Small.resolve(ui.style()).family);
     let mut job = LayoutJob::simple(label, font, colour, width);
