@@ -51,14 +51,17 @@ fn whole(mechanics: &Mechanics, level: &Level, space: &Space) -> Certificate {
 }
 
 #[test]
-fn what_the_study_writes_is_verified_and_is_the_whole_space() {
+fn what_the_study_writes_is_verified() {
+    let (mut whole, mut cut) = (0, 0);
     for (mechanics, level, space) in unsolvable(12) {
         let certificate = certificate(&mechanics, &level, &Limits::default()).expect(&level.name);
         let verified = check(&text_of(&certificate)).expect(&level.name);
-        assert_eq!(verified.positions, space.positions.len() as u64);
-        assert_eq!(verified.cut, 0);
+        assert!(verified.positions <= space.positions.len() as u64);
+        whole += u32::from(verified.positions == space.positions.len() as u64);
+        cut += verified.cut;
         assert_eq!(verified.level, level.name);
     }
+    assert!(whole > 20 && cut > 100, "{whole} {cut}");
 }
 
 #[test]

@@ -1,13 +1,17 @@
 //! Writing out why a level can't be finished.
 //!
-//! The whole space is closed roam by roam, without any bound, and every position met goes into the closed set. So a
-//! certificate rests on the step engine and the roams alone; whether these are right, [`crate::verify`] finds out by
-//! itself. The cost is that of the whole space: some hundred bytes for each roam, and a few microseconds for each position.
+//! The space is closed roam by roam, and every position met goes into the closed set, except that nothing is followed
+//! beyond a position that the checker itself can see to be hopeless ([`crate::verify::hopeless`]). The bounds of the search
+//! play no part: they may know more than the checker does, and a certificate must not rest on what can't be checked. What
+//! was done here is not trusted either; [`crate::verify::check`] plays every step again by the plain rules.
+//!
+//! The cost is some hundred bytes for each roam, and a few microseconds for each position.
 
 use super::{Limits, UndecidedReason};
 use crate::level::{Channel, Level, Mechanics, Problem};
 use crate::rules::{Position, Roam, Rules, Scratch, View};
-use crate::verify::certificate::Certificate;
+use crate::verify::certificate::{Certificate, Reason};
+use crate::verify::hopeless::Relaxed;
 use crate::verify::plain::{self, Body};
 use rustc_hash::FxHashSet;
 use std::time::Instant;
@@ -30,6 +34,9 @@ pub enum Uncertified {
 /// What one roam costs in memory beside its words and members, in bytes: the record of its frame, with allocations.
 const BYTES_FOR_A_ROAM: u64 = 400;
 
+/// What one cut position costs in memory at most, in bytes.
+const BYTES_FOR_A_CUT: u64 = 400;
+
 /// The certificate of a level that can't be finished.
 ///
 /// # Errors
@@ -42,6 +49,8 @@ pub fn certificate(
     let rules = Rules::compile(mechanics, level).map_err(Uncertified::Invalid)?;
     let started = Instant::now();
     let mut closing = Closing {
+        certificate: Certificate::new(mechanics, level),
+        relaxed: Relaxed::new(mechanics, level),
         scratch: rules.scratch(),
         roam: Roam::default(),
         seen: FxHashSet::default(),
@@ -50,18 +59,23 @@ pub fn certificate(
         bytes: 0,
         rules: &rules,
     };
-    let mut certificate = Certificate::new(mechanics, level);
-    closing.meet(&rules.start())?;
+    let start = rules.start();
+    if rules.finished(&start) {
+        return Err(Uncertified::Solvable);
+    }
+    closing.follow(&start);
     while let Some(entry) = closing.open.pop() {
         closing.keep_within(limits, started)?;
-        closing.expand(&entry, &mut certificate)?;
+        closing.expand(&entry)?;
     }
-    Ok(certificate)
+    Ok(closing.certificate)
 }
 
 /// A closure under way.
 struct Closing<'a> {
     rules: &'a Rules,
+    relaxed: Relaxed<'a>,
+    certificate: Certificate,
     scratch: Scratch,
     roam: Roam,
     /// The representative of every roam met.
@@ -73,11 +87,23 @@ struct Closing<'a> {
 }
 
 impl Closing<'_> {
-    /// Notes the roam of a position, to be expanded later if it is new.
+    /// Notes a position that a step leads to: as cut, or to be expanded with its roam.
     fn meet(&mut self, position: &Position) -> Result<(), Uncertified> {
         if self.rules.finished_in(&mut self.scratch, &position.0) {
             return Err(Uncertified::Solvable);
         }
+        let plain = as_plain(self.rules.view(position));
+        if self.relaxed.hopeless(&plain) {
+            self.certificate.add_cut(&plain, Reason::HomesOutOfReach);
+            self.bytes += BYTES_FOR_A_CUT;
+        } else {
+            self.follow(position);
+        }
+        Ok(())
+    }
+
+    /// Puts the roam of a position among those to be expanded, if it is new.
+    fn follow(&mut self, position: &Position) {
         self.rules
             .roam(&mut self.scratch, &position.0, &mut self.roam);
         let mut name = position.clone();
@@ -87,26 +113,21 @@ impl Closing<'_> {
             self.bytes += BYTES_FOR_A_ROAM + 16 * name.0.len() as u64;
             self.open.push(name);
         }
-        Ok(())
     }
 
     /// Adds every position of a roam to the closed set and meets what its steps lead to.
-    fn expand(
-        &mut self,
-        entry: &Position,
-        certificate: &mut Certificate,
-    ) -> Result<(), Uncertified> {
+    fn expand(&mut self, entry: &Position) -> Result<(), Uncertified> {
         self.rules.roam(&mut self.scratch, &entry.0, &mut self.roam);
-        let mut member = entry.clone();
-        for at in 0..self.roam.members.len() {
-            self.rules
-                .member_position(&entry.0, &self.roam.members[at], &mut member.0);
-            certificate.add_closed(&as_plain(self.rules.view(&member)));
-        }
-        self.positions += self.roam.members.len() as u64;
-        self.bytes += 16 * self.roam.members.len() as u64;
-        let departures = self.roam.departures.clone();
         let members = self.roam.members.clone();
+        let departures = self.roam.departures.clone();
+        let mut member = entry.clone();
+        for at in &members {
+            self.rules.member_position(&entry.0, at, &mut member.0);
+            self.certificate
+                .add_closed(&as_plain(self.rules.view(&member)));
+        }
+        self.positions += members.len() as u64;
+        self.bytes += 16 * members.len() as u64;
         for departure in departures {
             let from = &members[usize::from(departure.member)];
             self.rules.member_position(&entry.0, from, &mut member.0);

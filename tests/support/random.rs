@@ -183,6 +183,13 @@ pub const TINY: Bulk = Bulk {
     cargo: (1, 3),
 };
 
+/// For thousands of whole spaces in a few seconds.
+pub const MINUTE: Bulk = Bulk {
+    width: (3, 4),
+    height: (2, 4),
+    cargo: (1, 2),
+};
+
 /// The level of this seed.
 pub fn level(mix: &Mix, bulk: Bulk, seed: u64) -> (Mechanics, Level) {
     let mut rng = StdRng::seed_from_u64(seed);
