@@ -19,10 +19,11 @@ mod facts;
 mod goal;
 mod moving;
 mod packing;
+mod peek;
 mod replay;
 mod roam;
 mod state;
-mod tables;
+pub(crate) mod tables;
 #[cfg(test)]
 mod tests;
 mod walks;

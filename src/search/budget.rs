@@ -81,7 +81,11 @@ impl<T: Copy> Column<T> {
         }
         let bytes_each = size_of::<T>().max(1);
         let small = capacity * bytes_each < 1 << 20;
-        let roomier = if small { capacity * 2 } else { capacity + capacity / 16 };
+        let roomier = if small {
+            capacity * 2
+        } else {
+            capacity + capacity / 16
+        };
         let wanted = roomier.max(needed + 8);
         let grows = |to: usize| (to - capacity) as u64 * bytes_each as u64;
         let to = if budget.take(grows(wanted)) {
@@ -103,6 +107,11 @@ impl<T: Copy> Column<T> {
     /// Adds entries, for which room was made.
     pub fn extend_from_slice(&mut self, items: &[T]) {
         self.items.extend_from_slice(items);
+    }
+
+    /// Forgets all entries from `len` on; the bytes are kept.
+    pub fn truncate(&mut self, len: usize) {
+        self.items.truncate(len);
     }
 
     /// Bytes allocated.

@@ -82,7 +82,8 @@ mod tests {
             let (component, count) = strongly_connected(lists.len(), |node, at| {
                 lists[node as usize].get(at).copied()
             });
-            let mut graph = petgraph::graphmap::DiGraphMap::<u32, ()>::new();
+            let mut graph =
+                petgraph::graphmap::DiGraphMap::<u32, (), rustc_hash::FxBuildHasher>::default();
             (0..nodes).for_each(|node| {
                 graph.add_node(node);
             });
@@ -95,7 +96,11 @@ mod tests {
             let theirs = petgraph::algo::tarjan_scc(&graph);
             assert_eq!(theirs.len(), count as usize);
             for members in theirs {
-                assert!(members.iter().all(|&m| component[m as usize] == component[members[0] as usize]));
+                assert!(
+                    members
+                        .iter()
+                        .all(|&m| component[m as usize] == component[members[0] as usize])
+                );
             }
         }
     }

@@ -117,7 +117,11 @@ impl Engine {
         }
         self.nodes[id as usize].open = false;
         self.expanded += 1;
-        Ok(if self.best == before { Advance::Going } else { Advance::Better })
+        Ok(if self.best == before {
+            Advance::Going
+        } else {
+            Advance::Better
+        })
     }
 
     fn upper(&self, upper: u32) -> u32 {
@@ -161,7 +165,15 @@ impl Engine {
                 Aim::Steps => 1 + u32::from(self.distances[usize::from(edge.from_place)]),
             };
             let upper = self.upper(upper);
-            self.reach(graph, edge.to, edge.to_place, cost + step, id, edge.label, upper)?;
+            self.reach(
+                graph,
+                edge.to,
+                edge.to_place,
+                cost + step,
+                id,
+                edge.label,
+                upper,
+            )?;
         }
         Ok(())
     }

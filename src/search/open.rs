@@ -123,7 +123,10 @@ mod tests {
                 assert_eq!(open.push(priority, id, &mut budget), Ok(()));
                 plain.push((priority, id));
             } else {
-                let best = plain.iter().enumerate().min_by_key(|(at, (priority, _))| (*priority, usize::MAX - at));
+                let best = plain
+                    .iter()
+                    .enumerate()
+                    .min_by_key(|(at, (priority, _))| (*priority, usize::MAX - at));
                 let expected = best.map(|(at, _)| at).map(|at| plain.remove(at));
                 assert_eq!(open.pop(), expected);
             }

@@ -141,7 +141,7 @@ fn entry(hash: u64, id: u32) -> u64 {
 fn hash_of(row: &[u64]) -> u64 {
     let mut hash = 0x9e37_79b9_7f4a_7c15u64;
     for &word in row {
-        let product = u128::from(hash ^ word) * 0xd134_2543_de82_ef95_9e37_79b9_7f4a_7c15;
+        let product = u128::from(hash ^ word) * 0xd134_2543_de82_ef95;
         hash = (product as u64) ^ ((product >> 64) as u64).rotate_left(29);
     }
     hash ^= hash >> 32;
@@ -163,7 +163,10 @@ mod tests {
         let mut registry = Registry::new(2);
         let mut known: HashMap<[u64; 2], u32> = HashMap::new();
         for _ in 0..50_000 {
-            let row = [rng.random_range(0..150u64) << 40, rng.random_range(0..150u64)];
+            let row = [
+                rng.random_range(0..150u64) << 40,
+                rng.random_range(0..150u64),
+            ];
             assert_eq!(registry.find(&row), known.get(&row).copied());
             assert_eq!(registry.reserve(1, &mut budget), Ok(()));
             let next = known.len() as u32;
@@ -176,8 +179,14 @@ mod tests {
 
     #[test]
     fn hashes_of_small_numbers_spread_over_both_halves() {
-        let low: std::collections::HashSet<u64> = (0..4096).map(|n| hash_of(&[n]) & 0xffff).collect();
+        let low: std::collections::HashSet<u64> =
+            (0..4096).map(|n| hash_of(&[n]) & 0xffff).collect();
         let high: std::collections::HashSet<u64> = (0..4096).map(|n| hash_of(&[n]) >> 48).collect();
-        assert!(low.len() > 3_800 && high.len() > 3_800, "{} {}", low.len(), high.len());
+        assert!(
+            low.len() > 3_800 && high.len() > 3_800,
+            "{} {}",
+            low.len(),
+            high.len()
+        );
     }
 }
