@@ -1,4 +1,4 @@
-//! The pictures that come with the program, by the name of their file in `assets/kinds/`.
+//! What comes with the program: the sample pack, and pictures by the name of their file in `assets/kinds/`.
 
 /// A sorted table of names and the bytes of `assets/kinds/NAME.svg`.
 macro_rules! pictures {
@@ -57,6 +57,9 @@ const PICTURES: &[(&str, &[u8])] = pictures![
     "water-butt",
     "way-out",
 ];
+
+/// The pack in the greenhouse scenario that comes with the program.
+pub const SAMPLE_PACK: &[u8] = include_bytes!("../../sample-levels/night-greenhouse.pack.ron");
 
 /// The SVG of the built-in picture of this name. A kind without a look is drawn with the picture of its id, if there is one.
 pub fn builtin(name: &str) -> Option<&'static [u8]> {

@@ -14,7 +14,7 @@ mod read;
 mod wire;
 mod write;
 
-pub use builtin::{builtin, builtin_names};
+pub use builtin::{SAMPLE_PACK, builtin, builtin_names};
 pub use disk::{
     Fingerprint, OpenError, Opened, SaveError, fingerprint, open_pack, save_atomic, save_pack,
 };

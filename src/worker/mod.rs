@@ -9,11 +9,13 @@
 mod aside;
 mod engine;
 mod memory;
+mod pool;
 mod protocol;
 mod pump;
 mod verdict;
 
 pub use engine::{Engine, Studies};
+pub use pool::in_parallel;
 pub use protocol::{Answer, Event, Request, ShelfLine, Verdict};
 
 use crate::study::Halt;
