@@ -99,6 +99,15 @@ impl Rules {
     /// Fills `out` with the roam of a position. For several walkers, and under Drag, the position itself is its roam.
     /// So is a finished position, and no step departs from it; the roams of others hold no finished position.
     pub fn roam(&self, s: &mut Scratch, from: &[u64], out: &mut Roam) {
+        self.find_roam(s, from, out, true);
+    }
+
+    /// The roam without its departures: the members alone, at less cost.
+    pub fn roam_members(&self, s: &mut Scratch, from: &[u64], out: &mut Roam) {
+        self.find_roam(s, from, out, false);
+    }
+
+    fn find_roam(&self, s: &mut Scratch, from: &[u64], out: &mut Roam, departures: bool) {
         out.begin(self.tables.size.area());
         self.load(s, from);
         let finished = self.goal_holds(s);
@@ -106,7 +115,7 @@ impl Rules {
             [walker] if self.tables.control == Control::Steer => walker,
             _ => {
                 out.add(ENTRY);
-                if !finished {
+                if departures && !finished {
                     self.each_candidate(s, |step| {
                         out.departures.push(Departure { member: 0, step });
                     });
@@ -120,6 +129,14 @@ impl Rules {
             self.survey(s, walker);
             let field = self.layout.bodies[usize::from(walker)];
             self.spread(s, from, field, out);
+        }
+        if !departures {
+            out.departures.clear();
+        }
+        if out.members.len() > 1 {
+            for member in &out.members {
+                s.touched[usize::from(member.cell)] = true;
+            }
         }
     }
 

@@ -37,8 +37,7 @@ pub struct Scratch {
 
 impl Scratch {
     /// For each cell, row by row: whether a body came onto it, in passing or to stay, in any step made with this scratch since
-    /// it was made or [`Scratch::forget_touched`] was called. Walks that [`Rules::roam`] sees through without trying them are
-    /// not counted; its members are.
+    /// it was made or [`Scratch::forget_touched`] was called. The cells that a roam walks over count.
     pub fn touched(&self) -> &[bool] {
         &self.touched
     }
