@@ -1,7 +1,7 @@
 //! Everything that a user can do, as one enum. Panels only push actions; [`super::state::State::execute`] alone carries them out.
 
 use super::state::{BoardView, Brush, Dialog, ShowFlag, ThemeChoice, Tool, UnsavedChoice};
-use crate::level::{Cell, Turn};
+use crate::level::{Cell, Pack, Turn};
 use crate::study::Prove;
 use std::path::PathBuf;
 
@@ -162,6 +162,18 @@ pub enum Action {
     },
     /// Ask what a search may spend.
     AskBudget,
+
+    /// Show or hide the mechanics window.
+    ToggleMechanics,
+    /// Take this pack with other kinds or pack-wide rules, as one edit; refused if its mechanics can't be saved.
+    Rework {
+        /// What was done.
+        label: String,
+        /// The pack afterwards.
+        pack: Box<Pack>,
+    },
+    /// Say something in the status line.
+    Say(String),
 
     // --- Trail ----------------------------------------------------------------------------------------------------
     /// Go to the start of the route.

@@ -6,6 +6,7 @@
 
 use super::action::Action;
 use super::files::FileNews;
+use super::mechanics::MechanicsWindow;
 use super::pictures::Pictures;
 use super::state::{Effect, PathPurpose, Settings, State, ThemeChoice};
 use super::{board, dialogs, findings, jobs, keys, menu, shelf, status, theme, trail, tray};
@@ -25,6 +26,7 @@ pub struct Desk {
     /// All that the desk knows.
     pub state: State,
     pictures: Pictures,
+    mechanics: MechanicsWindow,
     worker: Worker,
     job: Option<Receiver<FileNews>>,
     picker: Option<Receiver<FileNews>>,
@@ -44,6 +46,7 @@ impl Desk {
         Desk {
             state: State::new(pack, path, settings),
             pictures: Pictures::default(),
+            mechanics: MechanicsWindow::default(),
             worker: Worker::start(move || wake.request_repaint()),
             job: None,
             picker: None,
@@ -163,7 +166,10 @@ impl Desk {
 
     fn panels(&mut self, ui: &mut egui::Ui, actions: &mut Vec<Action>) {
         let Desk {
-            state, pictures, ..
+            state,
+            pictures,
+            mechanics,
+            ..
         } = self;
         let folder = state.path.as_deref().and_then(|path| path.parent());
         pictures.begin_frame(ui.ctx(), &state.pack.mechanics, folder);
@@ -203,6 +209,8 @@ impl Desk {
             state.shown = shown.place.view();
             state.hovered = shown.hovered;
         });
+        let ctx = ui.ctx().clone();
+        mechanics.show(&ctx, state, pictures, actions);
     }
 
     /// Writes the autosave now and then while there is something unsaved; wakes the desk for it.

@@ -60,7 +60,10 @@ impl State {
             | Action::AskRenamePack
             | Action::SetProve(_)
             | Action::SetBudget { .. }
-            | Action::AskBudget => self.execute_pack(action),
+            | Action::AskBudget
+            | Action::ToggleMechanics
+            | Action::Rework { .. }
+            | Action::Say(_) => self.execute_pack(action),
             Action::First
             | Action::Back
             | Action::PlayPause
@@ -290,6 +293,9 @@ impl State {
                 self.ask_budget();
                 self.level_changed(true);
             }
+            Action::ToggleMechanics => self.mechanics_open = !self.mechanics_open,
+            Action::Rework { label, pack } => self.rework(label, *pack),
+            Action::Say(text) => self.said = text,
             _ => {
                 self.dialog = Some(Dialog::Budget {
                     seconds: self.settings.seconds,

@@ -62,7 +62,8 @@ impl State {
     /// After the pack was replaced as a whole: keeps the index in range and asks about the level on the board if it is another.
     pub(super) fn settle(&mut self, board_before: &Arc<Level>, same_place: bool) {
         self.level = self.level.min(self.pack.levels.len().saturating_sub(1));
-        if !Arc::ptr_eq(board_before, self.current()) {
+        let other_kinds = self.follow_kinds();
+        if other_kinds || !Arc::ptr_eq(board_before, self.current()) {
             if board_before.size != self.current().size {
                 self.view = None;
                 self.cursor = None;

@@ -18,6 +18,7 @@ pub mod keeper;
 mod keys;
 mod levels;
 pub mod marks;
+pub mod mechanics;
 mod menu;
 pub mod overlay;
 pub mod pictures;

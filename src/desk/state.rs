@@ -336,8 +336,12 @@ pub struct State {
     pub problems: Vec<Problem>,
     /// Cells that are marked because a problem is about them.
     pub marked: Vec<Cell>,
+    /// The kinds that the answers are for.
+    pub(super) asked_kinds: Arc<Mechanics>,
     /// The level on the board compiled, or none if it is invalid.
     pub rules: Option<Arc<Rules>>,
+    /// Whether the mechanics window is open.
+    pub mechanics_open: bool,
     /// The open dialog.
     pub dialog: Option<Dialog>,
     /// What is to be done once the question about unsaved changes is settled.
@@ -364,6 +368,7 @@ impl State {
                 .unwrap_or(crate::level::GroundIx(0)),
         );
         let mut state = State {
+            asked_kinds: Arc::clone(&pack.mechanics),
             saved: Saved {
                 pack: pack.clone(),
                 print: None,
@@ -392,6 +397,7 @@ impl State {
             problems: Vec::new(),
             marked: Vec::new(),
             rules: None,
+            mechanics_open: false,
             dialog: None,
             after_unsaved: None,
             said: String::new(),

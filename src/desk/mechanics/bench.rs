@@ -4,7 +4,10 @@ use super::scene::{cell_rect, paint_view};
 use crate::desk::pictures::Pictures;
 use crate::desk::state::State;
 use crate::desk::theme::Theme;
-use crate::level::{Brush, Cell, Control, Dir, DragStep, GroundIx, KindId, Level, Mechanics, Route, Severity, Size, structural_problems};
+use crate::level::{
+    Brush, Cell, Control, Dir, DragStep, GroundIx, KindId, Level, Mechanics, Route, Severity, Size,
+    structural_problems,
+};
 use crate::rules::{Rules, View};
 use egui::{Key, Modifiers, Rect, RichText, Sense, Stroke, StrokeKind, Ui, WidgetInfo, vec2};
 use std::sync::Arc;
@@ -32,7 +35,13 @@ impl Board {
     fn new(mechanics: &Arc<Mechanics>) -> Option<Board> {
         let size = Size::new(SIDES.0, SIDES.1)?;
         let level = crate::desk::levels::empty_level(mechanics, "try-out", size);
-        Some(Board { mechanics: Arc::clone(mechanics), level, steps: Vec::new(), block: 0, held: None })
+        Some(Board {
+            mechanics: Arc::clone(mechanics),
+            level,
+            steps: Vec::new(),
+            block: 0,
+            held: None,
+        })
     }
 
     /// The pack's kinds may have changed: what is on the board follows by id, and what has no kind any more vanishes.
@@ -43,9 +52,18 @@ impl Board {
         let old = Arc::clone(&self.mechanics);
         let floor = GroundIx(0);
         let ground = |id: &KindId| mechanics.find_ground(id).unwrap_or(floor);
-        self.level.ground.iter_mut().for_each(|ix| *ix = ground(&old.ground(*ix).id));
-        self.level.bodies.iter_mut().for_each(|body| *body = body.and_then(|ix| mechanics.find_body(&old.body(ix).id)));
-        self.level.items.iter_mut().for_each(|item| *item = item.and_then(|ix| mechanics.find_item(&old.item(ix).id)));
+        self.level
+            .ground
+            .iter_mut()
+            .for_each(|ix| *ix = ground(&old.ground(*ix).id));
+        self.level
+            .bodies
+            .iter_mut()
+            .for_each(|body| *body = body.and_then(|ix| mechanics.find_body(&old.body(ix).id)));
+        self.level
+            .items
+            .iter_mut()
+            .for_each(|item| *item = item.and_then(|ix| mechanics.find_item(&old.item(ix).id)));
         self.mechanics = Arc::clone(mechanics);
         self.steps.clear();
     }
@@ -60,14 +78,22 @@ impl Board {
     /// What stands where after the steps, or what keeps the board from being played.
     fn view(&self) -> Result<View, String> {
         let invalid = |problem: &&crate::level::Problem| problem.severity == Severity::Invalid;
-        if let Some(problem) = structural_problems(&self.mechanics, &self.level).iter().find(invalid) {
+        if let Some(problem) = structural_problems(&self.mechanics, &self.level)
+            .iter()
+            .find(invalid)
+        {
             return Err(problem.text.clone());
         }
         let rules = Rules::compile_open(&self.mechanics, &self.level).map_err(|problems| {
-            problems.first().map(|problem| problem.text.clone()).unwrap_or_default()
+            problems
+                .first()
+                .map(|problem| problem.text.clone())
+                .unwrap_or_default()
         })?;
         let played = rules.play(&self.route());
-        Ok(played.last().map_or_else(|| rules.start_view(), |last| last.view.clone()))
+        Ok(played
+            .last()
+            .map_or_else(|| rules.start_view(), |last| last.view.clone()))
     }
 
     /// Makes a step, if it changes anything.
@@ -75,7 +101,10 @@ impl Board {
         let Ok(rules) = Rules::compile_open(&self.mechanics, &self.level) else {
             return;
         };
-        self.steps.push(DragStep { block: self.block, dir });
+        self.steps.push(DragStep {
+            block: self.block,
+            dir,
+        });
         if rules.play(&self.route()).len() < self.steps.len() {
             self.steps.pop();
         }
@@ -117,28 +146,56 @@ impl Bench {
 fn board_area(ui: &mut Ui, state: &State, pictures: &mut Pictures, board: &mut Board, view: &View) {
     let size = board.level.size;
     let room = ui.available_size();
-    let side = (room.x / size.width() as f32).min((room.y - 8.0) / size.height() as f32).clamp(16.0, 56.0).floor();
-    let (rect, response) = ui.allocate_exact_size(vec2(size.width() as f32, size.height() as f32) * side, Sense::click_and_drag());
-    response.widget_info(|| WidgetInfo::labeled(egui::accesskit::Role::Canvas, true, "Try-out bench"));
+    let side = (room.x / size.width() as f32)
+        .min((room.y - 8.0) / size.height() as f32)
+        .clamp(16.0, 56.0)
+        .floor();
+    let (rect, response) = ui.allocate_exact_size(
+        vec2(size.width() as f32, size.height() as f32) * side,
+        Sense::click_and_drag(),
+    );
+    response.widget_info(|| WidgetInfo::labeled(egui::Role::Canvas, true, "Try-out bench"));
     paint_view(ui.painter(), pictures, size, view, rect, side);
     let theme = Theme::of(ui);
     for x in 0..=size.width() {
-        ui.painter().vline(rect.left() + x as f32 * side, rect.y_range(), theme.hairline());
+        ui.painter().vline(
+            rect.left() + x as f32 * side,
+            rect.y_range(),
+            theme.hairline(),
+        );
     }
     for y in 0..=size.height() {
-        ui.painter().hline(rect.x_range(), rect.top() + y as f32 * side, theme.hairline());
+        ui.painter().hline(
+            rect.x_range(),
+            rect.top() + y as f32 * side,
+            theme.hairline(),
+        );
     }
     if board.mechanics.control == Control::Drag
         && let Some(chosen) = view.bodies.iter().find(|body| body.number == board.block)
     {
         for &cell in &chosen.cells {
-            ui.painter().rect_stroke(cell_rect(rect, side, cell), 4.0, Stroke::new(2.0, theme.amber), StrokeKind::Inside);
+            ui.painter().rect_stroke(
+                cell_rect(rect, side, cell),
+                4.0,
+                Stroke::new(2.0, theme.amber),
+                StrokeKind::Inside,
+            );
         }
     }
     if response.has_focus() {
-        ui.painter().rect_stroke(rect, 2.0, Stroke::new(2.0, theme.amber), StrokeKind::Outside);
+        ui.painter().rect_stroke(
+            rect,
+            2.0,
+            Stroke::new(2.0, theme.amber),
+            StrokeKind::Outside,
+        );
         ui.memory_mut(|memory| {
-            let arrows = egui::EventFilter { horizontal_arrows: true, vertical_arrows: true, ..Default::default() };
+            let arrows = egui::EventFilter {
+                horizontal_arrows: true,
+                vertical_arrows: true,
+                ..Default::default()
+            };
             memory.set_focus_lock_filter(response.id, arrows);
         });
         keys(ui, board);
@@ -147,7 +204,12 @@ fn board_area(ui: &mut Ui, state: &State, pictures: &mut Pictures, board: &mut B
 }
 
 fn keys(ui: &mut Ui, board: &mut Board) {
-    let arrows = [(Key::ArrowUp, Dir::N), (Key::ArrowRight, Dir::E), (Key::ArrowDown, Dir::S), (Key::ArrowLeft, Dir::W)];
+    let arrows = [
+        (Key::ArrowUp, Dir::N),
+        (Key::ArrowRight, Dir::E),
+        (Key::ArrowDown, Dir::S),
+        (Key::ArrowLeft, Dir::W),
+    ];
     for (key, dir) in arrows {
         if ui.input_mut(|input| input.consume_key(Modifiers::NONE, key)) {
             board.step(dir);
@@ -158,7 +220,15 @@ fn keys(ui: &mut Ui, board: &mut Board) {
     }
 }
 
-fn pointer(ui: &Ui, state: &State, board: &mut Board, view: &View, rect: Rect, side: f32, response: &egui::Response) {
+fn pointer(
+    ui: &Ui,
+    state: &State,
+    board: &mut Board,
+    view: &View,
+    rect: Rect,
+    side: f32,
+    response: &egui::Response,
+) {
     if response.is_pointer_button_down_on() || response.clicked() {
         response.request_focus();
     }
@@ -175,7 +245,10 @@ fn pointer(ui: &Ui, state: &State, board: &mut Board, view: &View, rect: Rect, s
     let clear = ui.input(|input| input.pointer.secondary_down());
     let played = !board.steps.is_empty();
     let on_body = view.bodies.iter().find(|body| body.cells.contains(&cell));
-    if board.mechanics.control == Control::Drag && !clear && (board.held.is_some() || (played && on_body.is_some())) {
+    if board.mechanics.control == Control::Drag
+        && !clear
+        && (board.held.is_some() || (played && on_body.is_some()))
+    {
         drag(board, view, cell);
     } else if clear || ui.input(|input| input.pointer.primary_down()) {
         if let (Control::Drag, Some(body)) = (board.mechanics.control, on_body) {
@@ -200,7 +273,10 @@ fn drag(board: &mut Board, view: &View, cell: Cell) {
         }
         return;
     };
-    let (dx, dy) = (i32::from(cell.x) - i32::from(from.x), i32::from(cell.y) - i32::from(from.y));
+    let (dx, dy) = (
+        i32::from(cell.x) - i32::from(from.x),
+        i32::from(cell.y) - i32::from(from.y),
+    );
     let dir = match (dx.signum(), dy.signum()) {
         (1, _) => Dir::E,
         (-1, _) => Dir::W,
@@ -221,7 +297,11 @@ fn start_view(level: &Level) -> View {
     View {
         ground: level.ground.clone(),
         bodies: bodies
-            .map(|(number, body)| crate::rules::ViewBody { kind: body.kind, cells: body.cells, number: number as u16 })
+            .map(|(number, body)| crate::rules::ViewBody {
+                kind: body.kind,
+                cells: body.cells,
+                number: number as u16,
+            })
             .collect(),
         items: level.items.clone(),
         keys: Vec::new(),

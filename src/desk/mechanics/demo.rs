@@ -40,11 +40,19 @@ pub fn demo(of: Trait) -> Option<Demo> {
     let scene = Scene::of(of)?;
     let rules = Rules::compile_open(&scene.mechanics, &scene.level).ok()?;
     let mut views = vec![rules.start_view()];
-    views.extend(rules.play(&scene.route).into_iter().map(|played| played.view));
+    views.extend(
+        rules
+            .play(&scene.route)
+            .into_iter()
+            .map(|played| played.view),
+    );
     let at = |index: usize| views.get(index).or(views.last()).cloned();
     let last = views.len() - 1;
     let frames = [at(0)?, at(scene.middle.min(last))?, at(last)?];
-    Some(Demo { mechanics: Arc::new(scene.mechanics), frames })
+    Some(Demo {
+        mechanics: Arc::new(scene.mechanics),
+        frames,
+    })
 }
 
 struct Scene {
@@ -69,7 +77,12 @@ impl Scene {
         let (east, row) = (Dir::E, 1);
         scene.body(kinds::WALKER, 0, row);
         match of {
-            Trait::ClosedToWalkers | Trait::Slick | Trait::Warp | Trait::Exit | Trait::OneWay | Trait::Frail => {
+            Trait::ClosedToWalkers
+            | Trait::Slick
+            | Trait::Warp
+            | Trait::Exit
+            | Trait::OneWay
+            | Trait::Frail => {
                 scene.ground(kinds::SUBJECT, 2, row);
                 if of == Trait::Slick {
                     scene.ground(kinds::SUBJECT, 3, row);
@@ -81,11 +94,19 @@ impl Scene {
             }
             Trait::ClosedToCargo | Trait::Sink | Trait::Home => {
                 scene.body(kinds::CARGO, 1, row);
-                scene.ground(kinds::SUBJECT, if of == Trait::ClosedToCargo { 3 } else { 2 }, row);
+                scene.ground(
+                    kinds::SUBJECT,
+                    if of == Trait::ClosedToCargo { 3 } else { 2 },
+                    row,
+                );
                 scene.steps(&[east, east, east]);
             }
             Trait::Plate | Trait::Gate | Trait::Presses => {
-                let (plate, gate) = if of == Trait::Gate { (kinds::OTHER, kinds::SUBJECT) } else { (kinds::SUBJECT, kinds::OTHER) };
+                let (plate, gate) = if of == Trait::Gate {
+                    (kinds::OTHER, kinds::SUBJECT)
+                } else {
+                    (kinds::SUBJECT, kinds::OTHER)
+                };
                 scene.body(kinds::CARGO, 1, row);
                 scene.ground(plate, 2, row);
                 scene.ground(gate, 2, 0);
@@ -93,7 +114,15 @@ impl Scene {
             }
             Trait::Lock | Trait::Key => {
                 scene.item(kinds::KEY, 1, row);
-                scene.ground(if of == Trait::Lock { kinds::SUBJECT } else { kinds::OTHER }, 3, row);
+                scene.ground(
+                    if of == Trait::Lock {
+                        kinds::SUBJECT
+                    } else {
+                        kinds::OTHER
+                    },
+                    3,
+                    row,
+                );
                 scene.steps(&[east, east, east]);
             }
             Trait::Gem => {
@@ -118,7 +147,10 @@ impl Scene {
             Trait::Axis => {
                 scene.level.bodies.fill(None);
                 scene.body(kinds::CARGO, 1, row);
-                let step = DragStep { block: 0, dir: east };
+                let step = DragStep {
+                    block: 0,
+                    dir: east,
+                };
                 scene.route = Route::Drag(vec![step, step]);
             }
         }
@@ -134,7 +166,12 @@ impl Scene {
             let at = level.size.index(Cell::new(x as u8, 2));
             level.ground[at] = GroundIx(kinds::WALL);
         }
-        Some(Scene { mechanics, level, route: Route::Steer(Vec::new()), middle: 1 })
+        Some(Scene {
+            mechanics,
+            level,
+            route: Route::Steer(Vec::new()),
+            middle: 1,
+        })
     }
 
     fn ground(&mut self, kind: u16, x: u8, y: u8) {
@@ -181,14 +218,28 @@ fn mechanics_for(of: Trait) -> Mechanics {
         cargo.fills = matches!(of, Trait::Sink | Trait::Fills);
         cargo.axis = (of == Trait::Axis).then_some(Axis::Row);
     }
-    let item = |name: &str, item| id(name).map(|id| ItemKind { id, label: name.to_owned(), look: None, item });
+    let item = |name: &str, item| {
+        id(name).map(|id| ItemKind {
+            id,
+            label: name.to_owned(),
+            look: None,
+            item,
+        })
+    };
     let gem = item("seed", Item::Gem);
     let key = item("brass-key", Item::Key(channel()));
     Mechanics {
-        control: if of == Trait::Axis { Control::Drag } else { Control::Steer },
+        control: if of == Trait::Axis {
+            Control::Drag
+        } else {
+            Control::Steer
+        },
         strength: 1,
         objective: vec![Clause::GemsTaken],
-        grounds: [floor.take(), wall, subject, other].into_iter().flatten().collect(),
+        grounds: [floor.take(), wall, subject, other]
+            .into_iter()
+            .flatten()
+            .collect(),
         bodies: [walker.take(), cargo].into_iter().flatten().collect(),
         items: [gem, key].into_iter().flatten().collect(),
         legend: Legend::default(),
@@ -255,9 +306,19 @@ fn give(ground: &mut GroundKind, what: Trait) {
         Trait::Sink => ground.sink = becomes,
         Trait::Frail => ground.frail = id("hedge"),
         Trait::Plate | Trait::Presses => ground.plate = Some(channel()),
-        Trait::Gate => ground.gate = Some(Gate { channel: channel(), opens: Opens::WhenHeld }),
+        Trait::Gate => {
+            ground.gate = Some(Gate {
+                channel: channel(),
+                opens: Opens::WhenHeld,
+            })
+        }
         Trait::Warp => ground.warp = Some(channel()),
-        Trait::Lock => ground.lock = becomes.map(|becomes| Lock { channel: channel(), becomes }),
+        Trait::Lock => {
+            ground.lock = becomes.map(|becomes| Lock {
+                channel: channel(),
+                becomes,
+            })
+        }
         Trait::Home => ground.home = id("planter").into_iter().collect(),
         Trait::Exit => ground.exit = true,
         _ => {}

@@ -1,24 +1,28 @@
 //! The page of kinds: a list at the left, the chosen kind with its traits as sentences at the right.
 
 use super::demo::{Demo, SIDES, demo};
+use super::naming::{add, label_of, picture_of, set_label};
 use super::scene::paint_view;
-use super::traits::{Trait, cargo_ids, channels, traits_of};
+use super::traits::{Trait, traits_of};
+use super::values::{text_line, values};
 use crate::desk::action::Action;
 use crate::desk::marks::{Icon, icon_button};
-use crate::desk::pictures::{Kind, Pictures};
+use crate::desk::pictures::Pictures;
 use crate::desk::state::State;
 use crate::desk::theme::{self, Theme, counted};
 use crate::file::refusal;
-use crate::level::{
-    Axis, BodyIx, BodyKind, Channel, Dir, GroundIx, GroundKind, Item, ItemIx, ItemKind, KindId,
-    KindRef, Layer, Mechanics, Opens, Pack, ReworkError, Role, Size,
+use crate::level::{KindId, KindRef, Layer, Mechanics, Pack, Role, Size};
+use egui::{
+    Align, Color32, ComboBox, Layout, Rect, RichText, ScrollArea, Sense, Ui, Vec2, WidgetInfo, vec2,
 };
-use egui::{Align, Color32, ComboBox, Id, Layout, Rect, RichText, ScrollArea, Sense, TextEdit, Ui, Vec2, WidgetInfo, vec2};
 use std::collections::HashMap;
 use std::sync::Arc;
 
-const LAYERS: [(Layer, &str, &str); 3] =
-    [(Layer::Ground, "Grounds", "ground"), (Layer::Body, "Bodies", "body"), (Layer::Item, "Items", "item")];
+const LAYERS: [(Layer, &str, &str); 3] = [
+    (Layer::Ground, "Grounds", "ground"),
+    (Layer::Body, "Bodies", "body"),
+    (Layer::Item, "Items", "item"),
+];
 
 /// What the page keeps between frames: the chosen kind and the small pictures of the traits.
 pub struct KindsPage {
@@ -31,7 +35,15 @@ pub struct KindsPage {
 
 impl Default for KindsPage {
     fn default() -> KindsPage {
-        KindsPage { chosen: KindRef { layer: Layer::Ground, at: 0 }, demos: HashMap::new(), heir: None, said: None }
+        KindsPage {
+            chosen: KindRef {
+                layer: Layer::Ground,
+                at: 0,
+            },
+            demos: HashMap::new(),
+            heir: None,
+            said: None,
+        }
     }
 }
 
@@ -49,28 +61,53 @@ impl Scene<'_> {
 
     /// Takes changed mechanics as an edit, unless they are refused.
     fn change(&mut self, label: impl Into<String>, mechanics: Mechanics) {
-        let pack = Pack { mechanics: Arc::new(mechanics), ..self.state.pack.clone() };
-        self.actions.push(Action::Rework { label: label.into(), pack: Box::new(pack) });
+        let pack = Pack {
+            mechanics: Arc::new(mechanics),
+            ..self.state.pack.clone()
+        };
+        self.actions.push(Action::Rework {
+            label: label.into(),
+            pack: Box::new(pack),
+        });
     }
 }
 
 impl KindsPage {
     /// Draws the page.
-    pub fn show(&mut self, ui: &mut Ui, state: &State, pictures: &mut Pictures, actions: &mut Vec<Action>) {
-        let mut scene = Scene { state, pictures, actions };
+    pub fn show(
+        &mut self,
+        ui: &mut Ui,
+        state: &State,
+        pictures: &mut Pictures,
+        actions: &mut Vec<Action>,
+    ) {
+        let mut scene = Scene {
+            state,
+            pictures,
+            actions,
+        };
         let count = scene.mechanics().kind_count(self.chosen.layer) as u16;
         self.chosen.at = self.chosen.at.min(count.saturating_sub(1));
-        egui::Panel::left("kinds-list").resizable(false).exact_size(196.0).show(ui, |ui| {
-            ScrollArea::vertical().id_salt("kinds").auto_shrink(false).show(ui, |ui| self.list(ui, &mut scene));
-        });
-        egui::CentralPanel::default().show(ui, |ui| {
-            ScrollArea::vertical().id_salt("kind").auto_shrink(false).show(ui, |ui| {
-                if count == 0 {
-                    ui.label("There is no such kind yet. Add one at the left.");
-                } else {
-                    self.editor(ui, &mut scene);
-                }
+        egui::Panel::left("kinds-list")
+            .resizable(false)
+            .exact_size(196.0)
+            .show(ui, |ui| {
+                ScrollArea::vertical()
+                    .id_salt("kinds")
+                    .auto_shrink(false)
+                    .show(ui, |ui| self.list(ui, &mut scene));
             });
+        egui::CentralPanel::default().show(ui, |ui| {
+            ScrollArea::vertical()
+                .id_salt("kind")
+                .auto_shrink(false)
+                .show(ui, |ui| {
+                    if count == 0 {
+                        ui.label("There is no such kind yet. Add one at the left.");
+                    } else {
+                        self.editor(ui, &mut scene);
+                    }
+                });
         });
     }
 
@@ -84,10 +121,16 @@ impl KindsPage {
                 }
             }
             if ui.button(format!("Add a kind of {one}")).clicked() {
-                let added = KindRef { layer, at: scene.mechanics().kind_count(layer) as u16 };
+                let added = KindRef {
+                    layer,
+                    at: scene.mechanics().kind_count(layer) as u16,
+                };
                 match add(&scene.state.pack, layer) {
                     Ok(pack) => {
-                        scene.actions.push(Action::Rework { label: format!("added a kind of {one}"), pack: Box::new(pack) });
+                        scene.actions.push(Action::Rework {
+                            label: format!("added a kind of {one}"),
+                            pack: Box::new(pack),
+                        });
                         self.choose(added);
                     }
                     Err(error) => self.said = Some(error.to_string()),
@@ -99,19 +142,36 @@ impl KindsPage {
 
     fn line(&self, ui: &mut Ui, scene: &mut Scene, kind: KindRef) -> bool {
         let theme = Theme::of(ui);
-        let (rect, response) = ui.allocate_exact_size(vec2(ui.available_width(), 32.0), Sense::click());
+        let (rect, response) =
+            ui.allocate_exact_size(vec2(ui.available_width(), 32.0), Sense::click());
         let name = label_of(scene.mechanics(), kind).to_owned();
         let chosen = kind == self.chosen;
-        response.widget_info(|| WidgetInfo::selected(egui::WidgetType::SelectableLabel, true, chosen, &name));
+        response
+            .widget_info(|| WidgetInfo::selected(egui::Role::ListBoxOption, true, chosen, &name));
         if chosen || response.hovered() {
-            let edge = if chosen { egui::Stroke::new(1.5, theme.amber) } else { theme.hairline() };
-            ui.painter().rect(rect, 6.0, theme.raised, edge, egui::StrokeKind::Inside);
+            let edge = if chosen {
+                egui::Stroke::new(1.5, theme.amber)
+            } else {
+                theme.hairline()
+            };
+            ui.painter()
+                .rect(rect, 6.0, theme.raised, edge, egui::StrokeKind::Inside);
         }
         let picture = Rect::from_min_size(rect.min + vec2(4.0, 4.0), Vec2::splat(24.0));
-        scene.pictures.paint(ui.painter(), picture, picture_of(kind), Color32::WHITE);
+        scene
+            .pictures
+            .paint(ui.painter(), picture, picture_of(kind), Color32::WHITE);
         let room = Rect::from_min_max(rect.min + vec2(36.0, 0.0), rect.max - vec2(4.0, 0.0));
-        let mut line = ui.new_child(egui::UiBuilder::new().max_rect(room).layout(Layout::left_to_right(Align::Center)));
-        line.add(egui::Label::new(RichText::new(&name).color(theme.text)).truncate().selectable(false));
+        let mut line = ui.new_child(
+            egui::UiBuilder::new()
+                .max_rect(room)
+                .layout(Layout::left_to_right(Align::Center)),
+        );
+        line.add(
+            egui::Label::new(RichText::new(&name).color(theme.text))
+                .truncate()
+                .selectable(false),
+        );
         response.on_hover_text(name).clicked()
     }
 
@@ -142,14 +202,21 @@ impl KindsPage {
 
     fn name_lines(&mut self, ui: &mut Ui, scene: &mut Scene) {
         let kind = self.chosen;
-        let (label, id) = (label_of(scene.mechanics(), kind).to_owned(), scene.mechanics().kind_id(kind).cloned());
+        let (label, id) = (
+            label_of(scene.mechanics(), kind).to_owned(),
+            scene.mechanics().kind_id(kind).cloned(),
+        );
         ui.horizontal(|ui| {
             let (rect, _) = ui.allocate_exact_size(Vec2::splat(48.0), Sense::hover());
-            scene.pictures.paint(ui.painter(), rect, picture_of(kind), Color32::WHITE);
+            scene
+                .pictures
+                .paint(ui.painter(), rect, picture_of(kind), Color32::WHITE);
             ui.vertical(|ui| {
                 ui.horizontal(|ui| {
                     ui.label("Name");
-                    if let Some(new) = text_line(ui, ("label", kind), &label, "Name of the kind", 220.0) {
+                    if let Some(new) =
+                        text_line(ui, ("label", kind), &label, "Name of the kind", 220.0)
+                    {
                         let mut mechanics = scene.mechanics().clone();
                         set_label(&mut mechanics, kind, new.clone());
                         scene.change(format!("named a kind {new}"), mechanics);
@@ -160,10 +227,19 @@ impl KindsPage {
                     let old = id.map(|id| id.to_string()).unwrap_or_default();
                     if let Some(new) = text_line(ui, ("id", kind), &old, "Id of the kind", 180.0) {
                         let renamed = KindId::new(new).map_err(|error| error.to_string());
-                        let renamed = renamed.and_then(|id| scene.state.pack.renamed(kind, id).map_err(|error| error.to_string()));
+                        let renamed = renamed.and_then(|id| {
+                            scene
+                                .state
+                                .pack
+                                .renamed(kind, id)
+                                .map_err(|error| error.to_string())
+                        });
                         match renamed {
                             Ok(pack) => {
-                                scene.actions.push(Action::Rework { label: "renamed a kind".into(), pack: Box::new(pack) });
+                                scene.actions.push(Action::Rework {
+                                    label: "renamed a kind".into(),
+                                    pack: Box::new(pack),
+                                });
                                 self.said = None;
                             }
                             Err(said) => self.said = Some(said),
@@ -190,10 +266,16 @@ impl KindsPage {
                 ui.horizontal_wrapped(|ui| {
                     let mut checked = on;
                     let response = ui
-                        .add_enabled(refused.is_none(), egui::Checkbox::new(&mut checked, of.sentence()))
+                        .add_enabled(
+                            refused.is_none(),
+                            egui::Checkbox::new(&mut checked, of.sentence()),
+                        )
                         .on_disabled_hover_text(refused.clone().unwrap_or_default());
                     if response.clicked() {
-                        scene.change(format!("{} {}", if on { "took away" } else { "gave" }, short(of)), switched);
+                        scene.change(
+                            format!("{} {}", if on { "took away" } else { "gave" }, short(of)),
+                            switched,
+                        );
                     }
                     if on && let Some(changed) = values(ui, scene.mechanics(), kind, of) {
                         match refusal(&changed) {
@@ -214,15 +296,26 @@ impl KindsPage {
     fn pictures_of(&mut self, ui: &mut Ui, of: Trait) {
         const SIDE: f32 = 12.0;
         let one = vec2(SIDES.0 as f32, SIDES.1 as f32) * SIDE;
-        let (rect, response) = ui.allocate_exact_size(vec2(one.x * 3.0 + 12.0, one.y + 4.0), Sense::hover());
-        let shown = self.demos.entry(of).or_insert_with(|| demo(of).map(|demo| (demo, Pictures::new())));
+        let (rect, response) =
+            ui.allocate_exact_size(vec2(one.x * 3.0 + 12.0, one.y + 4.0), Sense::hover());
+        let shown = self
+            .demos
+            .entry(of)
+            .or_insert_with(|| demo(of).map(|demo| (demo, Pictures::new())));
         let (Some((demo, pictures)), Some(size)) = (shown, Size::new(SIDES.0, SIDES.1)) else {
             return;
         };
         pictures.begin_frame(ui.ctx(), &demo.mechanics, None);
         for (at, view) in demo.frames.iter().enumerate() {
             let corner = rect.min + vec2((one.x + 6.0) * at as f32, 2.0);
-            paint_view(ui.painter(), pictures, size, view, Rect::from_min_size(corner, one), SIDE);
+            paint_view(
+                ui.painter(),
+                pictures,
+                size,
+                view,
+                Rect::from_min_size(corner, one),
+                SIDE,
+            );
         }
         response.on_hover_text("Start, middle and end of a short play of this trait alone");
     }
@@ -231,16 +324,35 @@ impl KindsPage {
         let kind = self.chosen;
         let count = scene.mechanics().kind_count(kind.layer) as u16;
         ui.horizontal(|ui| {
-            if icon_button(ui, Icon::Earlier, kind.at > 0, "Move the kind up", "Earlier in tray and file").clicked() {
+            if icon_button(
+                ui,
+                Icon::Earlier,
+                kind.at > 0,
+                "Move the kind up",
+                "Earlier in tray and file",
+            )
+            .clicked()
+            {
                 self.move_to(scene, kind.at.saturating_sub(1));
             }
-            if icon_button(ui, Icon::Later, kind.at + 1 < count, "Move the kind down", "Later in tray and file").clicked() {
+            if icon_button(
+                ui,
+                Icon::Later,
+                kind.at + 1 < count,
+                "Move the kind down",
+                "Later in tray and file",
+            )
+            .clicked()
+            {
                 self.move_to(scene, kind.at + 1);
             }
             if ui.button("Duplicate").clicked()
                 && let Ok(pack) = scene.state.pack.with_copy(kind)
             {
-                scene.actions.push(Action::Rework { label: "duplicated a kind".into(), pack: Box::new(pack) });
+                scene.actions.push(Action::Rework {
+                    label: "duplicated a kind".into(),
+                    pack: Box::new(pack),
+                });
                 self.choose(KindRef { at: count, ..kind });
             }
         });
@@ -249,7 +361,10 @@ impl KindsPage {
 
     fn move_to(&mut self, scene: &mut Scene, to: u16) {
         if let Ok(pack) = scene.state.pack.moved(self.chosen, to) {
-            scene.actions.push(Action::Rework { label: "moved a kind".into(), pack: Box::new(pack) });
+            scene.actions.push(Action::Rework {
+                label: "moved a kind".into(),
+                pack: Box::new(pack),
+            });
             self.chosen.at = to;
         }
     }
@@ -263,29 +378,56 @@ impl KindsPage {
         } else {
             let levels = counted(uses.levels.len() as u64, "level", "levels");
             let kinds: Vec<&str> = uses.kinds.iter().map(KindId::as_str).collect();
-            let named = if kinds.is_empty() { String::new() } else { format!(", named by {}", kinds.join(", ")) };
-            let asked = if uses.objective { ", asked for by an objective" } else { "" };
-            format!("Used on {} of {levels}{named}{asked}.", counted(cells as u64, "cell", "cells"))
+            let named = if kinds.is_empty() {
+                String::new()
+            } else {
+                format!(", named by {}", kinds.join(", "))
+            };
+            let asked = if uses.objective {
+                ", asked for by an objective"
+            } else {
+                ""
+            };
+            format!(
+                "Used on {} of {levels}{named}{asked}.",
+                counted(cells as u64, "cell", "cells")
+            )
         };
         ui.label(RichText::new(text).color(Theme::of(ui).muted));
         ui.horizontal_wrapped(|ui| {
             if !uses.none() {
                 ui.label("Put in its place:");
-                let named = self.heir.map(|at| label_of(scene.mechanics(), KindRef { at, ..kind }).to_owned());
-                let none = if kind.layer == Layer::Ground { "choose a ground" } else { "nothing" };
-                ComboBox::from_id_salt("heir").selected_text(named.as_deref().unwrap_or(none)).show_ui(ui, |ui| {
-                    ui.selectable_value(&mut self.heir, None, none);
-                    for at in (0..scene.mechanics().kind_count(kind.layer) as u16).filter(|&at| at != kind.at) {
-                        let label = label_of(scene.mechanics(), KindRef { at, ..kind });
-                        ui.selectable_value(&mut self.heir, Some(at), label);
-                    }
-                });
+                let named = self
+                    .heir
+                    .map(|at| label_of(scene.mechanics(), KindRef { at, ..kind }).to_owned());
+                let none = if kind.layer == Layer::Ground {
+                    "choose a ground"
+                } else {
+                    "nothing"
+                };
+                ComboBox::from_id_salt("heir")
+                    .selected_text(named.as_deref().unwrap_or(none))
+                    .show_ui(ui, |ui| {
+                        ui.selectable_value(&mut self.heir, None, none);
+                        for at in (0..scene.mechanics().kind_count(kind.layer) as u16)
+                            .filter(|&at| at != kind.at)
+                        {
+                            let label = label_of(scene.mechanics(), KindRef { at, ..kind });
+                            ui.selectable_value(&mut self.heir, Some(at), label);
+                        }
+                    });
             }
             if ui.button("Remove this kind").clicked() {
                 match scene.state.pack.without(kind, self.heir) {
                     Ok(pack) => {
-                        scene.actions.push(Action::Rework { label: "removed a kind".into(), pack: Box::new(pack) });
-                        self.choose(KindRef { at: kind.at.saturating_sub(1), ..kind });
+                        scene.actions.push(Action::Rework {
+                            label: "removed a kind".into(),
+                            pack: Box::new(pack),
+                        });
+                        self.choose(KindRef {
+                            at: kind.at.saturating_sub(1),
+                            ..kind
+                        });
                     }
                     Err(error) => self.said = Some(error.to_string()),
                 }
@@ -298,7 +440,9 @@ impl KindsPage {
 fn no_switch(of: Trait, on: bool) -> String {
     match (of, on) {
         (Trait::Home, _) => "There is no cargo in the pack to be a home for.".to_owned(),
-        (Trait::Sink | Trait::Frail | Trait::Lock, false) => "There is no other ground that it could become.".to_owned(),
+        (Trait::Sink | Trait::Frail | Trait::Lock, false) => {
+            "There is no other ground that it could become.".to_owned()
+        }
         _ => "An item is one or the other.".to_owned(),
     }
 }
@@ -311,7 +455,10 @@ fn role_line(ui: &mut Ui, scene: &mut Scene, kind: KindRef) {
     let role = scene.mechanics().bodies[usize::from(kind.at)].role;
     ui.horizontal(|ui| {
         ui.label("It is");
-        for (value, text) in [(Role::Walker, "moved by the player"), (Role::Cargo, "cargo")] {
+        for (value, text) in [
+            (Role::Walker, "moved by the player"),
+            (Role::Cargo, "cargo"),
+        ] {
             if ui.radio(role == value, text).clicked() && role != value {
                 let mut mechanics = scene.mechanics().clone();
                 mechanics.bodies[usize::from(kind.at)].role = value;
@@ -322,160 +469,4 @@ fn role_line(ui: &mut Ui, scene: &mut Scene, kind: KindRef) {
             }
         }
     });
-}
-
-/// Draws the values of a trait that is on. Returns the mechanics with a changed value.
-fn values(ui: &mut Ui, mechanics: &Mechanics, kind: KindRef, of: Trait) -> Option<Mechanics> {
-    let mut new = mechanics.clone();
-    let at = usize::from(kind.at);
-    match kind.layer {
-        Layer::Ground => ground_values(ui, mechanics, &mut new.grounds[at], of),
-        Layer::Body => {
-            if let (Trait::Axis, Some(axis)) = (of, new.bodies[at].axis.as_mut()) {
-                for (value, text) in [(Axis::Any, "any way"), (Axis::Row, "along rows"), (Axis::Column, "along columns")] {
-                    ui.radio_value(axis, value, text);
-                }
-            }
-        }
-        Layer::Item => {
-            if let (Trait::Key, Item::Key(channel)) = (of, &mut new.items[at].item) {
-                channel_value(ui, mechanics, channel, kind);
-            }
-        }
-    }
-    (new != *mechanics).then_some(new)
-}
-
-fn ground_values(ui: &mut Ui, mechanics: &Mechanics, ground: &mut GroundKind, of: Trait) {
-    let salt = (ground.id.clone(), of);
-    match of {
-        Trait::OneWay => {
-            for (dir, text) in [(Dir::N, "north"), (Dir::E, "east"), (Dir::S, "south"), (Dir::W, "west")] {
-                let mut on = ground.enter_only.contains(&dir);
-                if ui.checkbox(&mut on, text).changed() {
-                    ground.enter_only.retain(|&other| other != dir);
-                    ground.enter_only.extend(on.then_some(dir));
-                    ground.enter_only.sort();
-                }
-            }
-        }
-        Trait::Sink => becomes_value(ui, mechanics, ground.sink.as_mut(), salt),
-        Trait::Frail => becomes_value(ui, mechanics, ground.frail.as_mut(), salt),
-        Trait::Plate => channel_of(ui, mechanics, ground.plate.as_mut(), salt),
-        Trait::Warp => channel_of(ui, mechanics, ground.warp.as_mut(), salt),
-        Trait::Gate => {
-            if let Some(gate) = &mut ground.gate {
-                channel_value(ui, mechanics, &mut gate.channel, salt);
-                ui.radio_value(&mut gate.opens, Opens::WhenHeld, "is held");
-                ui.radio_value(&mut gate.opens, Opens::WhenFree, "is free");
-            }
-        }
-        Trait::Lock => {
-            if let Some(lock) = &mut ground.lock {
-                channel_value(ui, mechanics, &mut lock.channel, salt.clone());
-                ui.label("and becomes");
-                becomes_value(ui, mechanics, Some(&mut lock.becomes), salt);
-            }
-        }
-        Trait::Home => {
-            for id in cargo_ids(mechanics) {
-                let label = mechanics.find_body(id).map_or(id.as_str(), |ix| mechanics.body(ix).label.as_str());
-                let mut on = ground.home.contains(id);
-                if ui.checkbox(&mut on, label).changed() {
-                    ground.home.retain(|other| other != id);
-                    ground.home.extend(on.then(|| id.clone()));
-                }
-            }
-        }
-        _ => {}
-    }
-}
-
-fn becomes_value(ui: &mut Ui, mechanics: &Mechanics, value: Option<&mut KindId>, salt: impl std::hash::Hash) {
-    let Some(value) = value else { return };
-    let label = |id: &KindId| mechanics.find_ground(id).map_or(id.to_string(), |ix| mechanics.ground(ix).label.clone());
-    ComboBox::from_id_salt(("becomes", salt)).selected_text(label(value)).show_ui(ui, |ui| {
-        for ground in &mechanics.grounds {
-            ui.selectable_value(value, ground.id.clone(), &ground.label);
-        }
-    });
-}
-
-fn channel_of(ui: &mut Ui, mechanics: &Mechanics, value: Option<&mut Channel>, salt: impl std::hash::Hash) {
-    if let Some(channel) = value {
-        channel_value(ui, mechanics, channel, salt);
-    }
-}
-
-/// A channel is typed, or chosen among those in use.
-fn channel_value(ui: &mut Ui, mechanics: &Mechanics, value: &mut Channel, salt: impl std::hash::Hash) {
-    let id = ui.make_persistent_id(("channel", salt));
-    if let Some(new) = text_line(ui, id, &value.0, "Channel", 64.0) {
-        *value = Channel(new);
-    }
-    ComboBox::from_id_salt(id.with("known")).selected_text("").width(24.0).show_ui(ui, |ui| {
-        for channel in channels(mechanics) {
-            let text = channel.0.clone();
-            ui.selectable_value(value, channel, text);
-        }
-    });
-}
-
-/// A line of text that is taken when it is left or Enter is pressed. Returns the new text, if it is another.
-pub(super) fn text_line(ui: &mut Ui, key: impl std::hash::Hash, now: &str, name: &str, width: f32) -> Option<String> {
-    let id = Id::new(("text-line", key));
-    let mut text = ui.data(|data| data.get_temp::<String>(id)).unwrap_or_else(|| now.to_owned());
-    let response = ui.add(TextEdit::singleline(&mut text).id(id.with("edit")).desired_width(width).char_limit(60));
-    response.widget_info(|| WidgetInfo::labeled(egui::accesskit::Role::TextInput, true, name));
-    if response.has_focus() {
-        ui.data_mut(|data| data.insert_temp(id, text));
-        return None;
-    }
-    ui.data_mut(|data| data.remove::<String>(id));
-    let text = text.trim().to_owned();
-    (response.lost_focus() && text != now && !text.is_empty()).then_some(text)
-}
-
-fn picture_of(kind: KindRef) -> Kind {
-    match kind.layer {
-        Layer::Ground => Kind::Ground(GroundIx(kind.at)),
-        Layer::Body => Kind::Body(BodyIx(kind.at)),
-        Layer::Item => Kind::Item(ItemIx(kind.at)),
-    }
-}
-
-fn label_of(mechanics: &Mechanics, kind: KindRef) -> &str {
-    let at = usize::from(kind.at);
-    let label = match kind.layer {
-        Layer::Ground => mechanics.grounds.get(at).map(|kind| &kind.label),
-        Layer::Body => mechanics.bodies.get(at).map(|kind| &kind.label),
-        Layer::Item => mechanics.items.get(at).map(|kind| &kind.label),
-    };
-    label.map_or("", String::as_str)
-}
-
-fn set_label(mechanics: &mut Mechanics, kind: KindRef, label: String) {
-    let at = usize::from(kind.at);
-    match kind.layer {
-        Layer::Ground => mechanics.grounds[at].label = label,
-        Layer::Body => mechanics.bodies[at].label = label,
-        Layer::Item => mechanics.items[at].label = label,
-    }
-}
-
-/// The pack with a new kind of a layer.
-fn add(pack: &Pack, layer: Layer) -> Result<Pack, ReworkError> {
-    let name = match layer {
-        Layer::Ground => "new-ground",
-        Layer::Body => "new-body",
-        Layer::Item => "new-item",
-    };
-    let wanted = KindId::new(name).map_err(|_| ReworkError::Missing)?;
-    let id = pack.mechanics.free_id(layer, &wanted);
-    let label = id.as_str().replace('-', " ");
-    match layer {
-        Layer::Ground => pack.with_ground(GroundKind::plain(id, label)),
-        Layer::Body => pack.with_body(BodyKind::plain(id, label, Role::Cargo)),
-        Layer::Item => pack.with_item(ItemKind { id, label, look: None, item: Item::Gem }),
-    }
 }

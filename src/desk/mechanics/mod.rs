@@ -7,8 +7,11 @@ mod bench;
 mod demo;
 mod game;
 mod kinds;
+mod naming;
+mod rework;
 mod scene;
 mod traits;
+mod values;
 
 pub use demo::{Demo, demo};
 pub use traits::{Trait, traits_of};
@@ -39,7 +42,13 @@ pub struct MechanicsWindow {
 
 impl MechanicsWindow {
     /// Draws the window if it is open.
-    pub fn show(&mut self, ctx: &Context, state: &State, pictures: &mut Pictures, actions: &mut Vec<Action>) {
+    pub fn show(
+        &mut self,
+        ctx: &Context,
+        state: &State,
+        pictures: &mut Pictures,
+        actions: &mut Vec<Action>,
+    ) {
         if !state.mechanics_open {
             return;
         }
@@ -47,7 +56,10 @@ impl MechanicsWindow {
         let room = ctx.content_rect().size();
         Window::new("Mechanics")
             .open(&mut open)
-            .default_size([(room.x * 0.62).clamp(520.0, 860.0), (room.y * 0.72).clamp(380.0, 640.0)])
+            .default_size([
+                (room.x * 0.62).clamp(520.0, 860.0),
+                (room.y * 0.72).clamp(380.0, 640.0),
+            ])
             .min_size([460.0, 320.0])
             .collapsible(true)
             .show(ctx, |ui| {

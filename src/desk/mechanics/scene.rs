@@ -12,7 +12,14 @@ pub fn cell_rect(room: Rect, side: f32, cell: Cell) -> Rect {
 }
 
 /// Paints a position with cells of `side` points.
-pub fn paint_view(painter: &Painter, pictures: &mut Pictures, size: Size, view: &View, room: Rect, side: f32) {
+pub fn paint_view(
+    painter: &Painter,
+    pictures: &mut Pictures,
+    size: Size,
+    view: &View,
+    room: Rect,
+    side: f32,
+) {
     let at = |cell: Cell| cell_rect(room, side, cell);
     for cell in size.cells() {
         let place = size.index(cell);

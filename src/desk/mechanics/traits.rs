@@ -71,10 +71,19 @@ pub fn traits_of(mechanics: &Mechanics, kind: KindRef) -> Vec<Trait> {
         Layer::Ground => GROUND.into(),
         Layer::Item => vec![Trait::Gem, Trait::Key],
         Layer::Body => {
-            let walker = mechanics.bodies.get(usize::from(kind.at)).is_some_and(|body| body.role == Role::Walker);
+            let walker = mechanics
+                .bodies
+                .get(usize::from(kind.at))
+                .is_some_and(|body| body.role == Role::Walker);
             match (walker, mechanics.control) {
                 (true, _) => vec![Trait::Presses],
-                (false, Control::Steer) => vec![Trait::Push, Trait::Tow, Trait::Glide, Trait::Fills, Trait::Presses],
+                (false, Control::Steer) => vec![
+                    Trait::Push,
+                    Trait::Tow,
+                    Trait::Glide,
+                    Trait::Fills,
+                    Trait::Presses,
+                ],
                 (false, Control::Drag) => vec![Trait::Axis, Trait::Fills, Trait::Presses],
             }
         }
@@ -112,8 +121,14 @@ impl Trait {
     pub fn is_on(self, mechanics: &Mechanics, kind: KindRef) -> bool {
         let at = usize::from(kind.at);
         match kind.layer {
-            Layer::Ground => mechanics.grounds.get(at).is_some_and(|ground| self.of_ground(ground)),
-            Layer::Item => mechanics.items.get(at).is_some_and(|item| (item.item == Item::Gem) == (self == Trait::Gem)),
+            Layer::Ground => mechanics
+                .grounds
+                .get(at)
+                .is_some_and(|ground| self.of_ground(ground)),
+            Layer::Item => mechanics
+                .items
+                .get(at)
+                .is_some_and(|item| (item.item == Item::Gem) == (self == Trait::Gem)),
             Layer::Body => mechanics.bodies.get(at).is_some_and(|body| match self {
                 Trait::Push => body.push,
                 Trait::Tow => body.tow,
@@ -158,7 +173,11 @@ impl Trait {
             Layer::Item => {
                 if let Some(item) = new.items.get_mut(at) {
                     let gem = (self == Trait::Gem) == on;
-                    item.item = if gem { Item::Gem } else { Item::Key(any_channel(mechanics)) };
+                    item.item = if gem {
+                        Item::Gem
+                    } else {
+                        Item::Key(any_channel(mechanics))
+                    };
                 }
             }
             Layer::Body => {
@@ -188,12 +207,17 @@ impl Trait {
             Trait::Frail => ground.frail = likely.ground.filter(|_| on),
             Trait::Plate => ground.plate = on.then_some(likely.channel),
             Trait::Gate => {
-                ground.gate = on.then_some(Gate { channel: likely.channel, opens: Opens::WhenHeld });
+                ground.gate = on.then_some(Gate {
+                    channel: likely.channel,
+                    opens: Opens::WhenHeld,
+                });
             }
             Trait::Warp => ground.warp = on.then_some(likely.channel),
             Trait::Lock => {
-                ground.lock =
-                    likely.ground.filter(|_| on).map(|becomes| Lock { channel: likely.channel, becomes });
+                ground.lock = likely.ground.filter(|_| on).map(|becomes| Lock {
+                    channel: likely.channel,
+                    becomes,
+                });
             }
             Trait::Home => ground.home = if on { likely.cargo } else { Vec::new() },
             Trait::Exit => ground.exit = on,
@@ -221,15 +245,28 @@ impl Likely {
 
 /// The first ground without traits, else the first that can't become anything; never `own`.
 fn plain_but(mechanics: &Mechanics, own: GroundIx) -> Option<KindId> {
-    let others = || mechanics.grounds.iter().enumerate().filter(|&(at, _)| at != usize::from(own.0)).map(|(_, kind)| kind);
+    let others = || {
+        mechanics
+            .grounds
+            .iter()
+            .enumerate()
+            .filter(|&(at, _)| at != usize::from(own.0))
+            .map(|(_, kind)| kind)
+    };
     let bare = |kind: &&GroundKind| GROUND.iter().all(|one| !one.of_ground(kind));
     let last = |kind: &&GroundKind| kind.becomes().next().is_none() && kind.warp.is_none();
-    others().find(bare).or_else(|| others().find(last)).map(|kind| kind.id.clone())
+    others()
+        .find(bare)
+        .or_else(|| others().find(last))
+        .map(|kind| kind.id.clone())
 }
 
 /// A channel that is in use, else "a".
 fn any_channel(mechanics: &Mechanics) -> Channel {
-    channels(mechanics).into_iter().next().unwrap_or_else(|| Channel("a".to_owned()))
+    channels(mechanics)
+        .into_iter()
+        .next()
+        .unwrap_or_else(|| Channel("a".to_owned()))
 }
 
 /// All channels in use, in order.
@@ -253,7 +290,11 @@ pub fn channels(mechanics: &Mechanics) -> Vec<Channel> {
 
 /// The ids of all cargo.
 pub fn cargo_ids(mechanics: &Mechanics) -> impl Iterator<Item = &KindId> {
-    mechanics.bodies.iter().filter(|body| body.role == Role::Cargo).map(|body| &body.id)
+    mechanics
+        .bodies
+        .iter()
+        .filter(|body| body.role == Role::Cargo)
+        .map(|body| &body.id)
 }
 
 fn set_role(roles: &mut Vec<Role>, role: Role, on: bool) {
