@@ -264,6 +264,9 @@ pub static COMMANDS: &[Command] = &[
         .can(has_route),
     command(Menu::Level, "Mean this route", |_| Action::MeanThisRoute).can(has_route),
     command(Menu::Pack, "Rename pack…", |_| Action::AskRenamePack),
+    command(Menu::Pack, "Mechanics", |_| Action::ToggleMechanics)
+        .plain(Key::F4)
+        .ticked(|state| state.mechanics_open),
     command(Menu::Pack, "Prove the fewest steps", |_| {
         Action::SetProve(Prove::Steps)
     })
