@@ -128,7 +128,7 @@ fn a_kind_that_is_added_can_be_painted_and_removed_again() {
     let mechanics = harness.state().state.pack.mechanics.clone();
     assert_eq!(mechanics.grounds.len(), 4);
     assert_eq!(mechanics.grounds[3].id.as_str(), "new-ground");
-    harness.get_by_label("Remove this kind").click();
+    harness.get_by_label("Remove this kind").click_accesskit();
     harness.run_steps(3);
     assert_eq!(harness.state().state.pack.mechanics.grounds.len(), 3);
 }
