@@ -54,7 +54,7 @@ pub fn run(path: Option<PathBuf>) -> Result<(), DeskError> {
     };
     let create = move |creation: &eframe::CreationContext<'_>| {
         let desk = desk(&creation.egui_ctx, sample, path.as_deref());
-        Ok(Box::new(Window(desk)) as Box<dyn eframe::App>)
+        Ok(Box::new(desk) as Box<dyn eframe::App>)
     };
     // The window libraries are loaded when they are needed; what is missing comes as an error or, in places, as a panic.
     let opened = std::panic::catch_unwind(std::panic::AssertUnwindSafe(|| {
@@ -126,12 +126,9 @@ fn icon() -> IconData {
     }
 }
 
-/// The desk as eframe wants it.
-struct Window(Desk);
-
-impl eframe::App for Window {
+impl eframe::App for Desk {
     fn ui(&mut self, ui: &mut egui::Ui, _frame: &mut eframe::Frame) {
-        self.0.ui(ui);
+        self.frame(ui);
     }
 
     fn clear_color(&self, visuals: &egui::Visuals) -> [f32; 4] {
