@@ -103,7 +103,7 @@ impl Window {
     }
 
     fn place(&self) -> Place {
-        let board = self.0.get_by_label_contains("board, ").rect();
+        let board = self.0.get_by_role(egui::accesskit::Role::Canvas).rect();
         Place::fit(self.desk().state.current().size, board, 1.0)
     }
 
@@ -448,7 +448,7 @@ fn a_damaged_pack_is_told_with_line_and_column_and_left_alone() {
     let mut window = Window::new();
     window.act(Action::OpenPath(path.clone()));
     window.wait_to_see("This pack can't be opened");
-    assert!(window.sees("damaged.pack.ron:3:5:"), "line and column");
+    window.wait_to_see("damaged.pack.ron:3:5: There is no field colour in a pack.");
     assert_eq!(window.desk().state.pack, pack(), "the desk keeps its pack");
     assert_eq!(std::fs::read_to_string(&path).expect("a file"), damaged);
 }
@@ -501,7 +501,7 @@ fn unsaved_changes_are_asked_about_before_they_are_dropped() {
     window.act(Action::CreatePack {
         name: "Other".to_owned(),
     });
-    assert!(window.sees("Save the changes?"));
+    window.wait_to_see("Save the changes?");
     window.0.get_by_label("Cancel").click();
     window.wait("the question is gone", |window| {
         window.desk().state.dialog.is_none()
@@ -574,7 +574,7 @@ fn menus_show_names_and_keys_and_do_what_they_say() {
     window.0.get_by_label("Level").click();
     window.0.run_steps(3);
     assert!(window.sees("Ctrl+D"));
-    window.0.get_by_label_contains("Duplicate").click();
+    window.0.get_by_label("Duplicate Ctrl+D").click();
     window.0.run_steps(3);
     assert_eq!(window.desk().state.pack.levels.len(), 3);
 }

@@ -4,6 +4,7 @@ use super::action::Action;
 use super::state::{Dialog, Effect, PathPurpose, State};
 use crate::file::{Fingerprint, Opened, ReadPack};
 use crate::level::Pack;
+use crate::worker::Request;
 use std::path::{Path, PathBuf};
 use std::sync::Arc;
 
@@ -104,7 +105,14 @@ impl State {
         let mut fresh = State::new(pack, path, self.settings.clone());
         // Revisions go on counting, so that an answer about the old pack can't be taken for one about the new.
         fresh.revision = self.revision;
+        // Questions about the old pack that were not yet asked are not asked any more.
         fresh.effects = std::mem::take(&mut self.effects);
+        fresh.effects.retain(|effect| {
+            !matches!(
+                effect,
+                Effect::Ask(Request::Study { .. } | Request::Shelf { .. })
+            )
+        });
         fresh.show = self.show;
         fresh.tool = self.tool;
         fresh.shown = self.shown;
