@@ -70,7 +70,7 @@ impl Desk {
     }
 
     /// One frame.
-    pub fn frame(&mut self, ui: &mut egui::Ui) {
+    pub fn ui(&mut self, ui: &mut egui::Ui) {
         let ctx = ui.ctx().clone();
         self.state.now_secs = ctx.input(|input| input.time);
         self.set_theme(&ctx);

@@ -128,7 +128,7 @@ fn icon() -> IconData {
 
 impl eframe::App for Desk {
     fn ui(&mut self, ui: &mut egui::Ui, _frame: &mut eframe::Frame) {
-        self.frame(ui);
+        Desk::ui(self, ui);
     }
 
     fn clear_color(&self, visuals: &egui::Visuals) -> [f32; 4] {
