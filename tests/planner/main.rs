@@ -7,15 +7,41 @@
 mod pddl;
 mod rooms;
 
+use foldwright::level::{Level, Mechanics};
 use foldwright::rules::Rules;
-use foldwright::study::{Limits, Outcome, Prove, solve};
+use foldwright::study::{Limits, Outcome, Prove, Report, solve};
 use pddl::Measure;
 use rooms::Mix;
 use std::path::Path;
 use std::process::Command;
 
-/// Rooms of each mix.
-const ROOMS: u64 = 8;
+/// Rooms of each mix that can be finished, and rooms that can't.
+const ROOMS: [u32; 2] = [5, 3];
+
+/// The first seeds that give a room of each sort; ones without room for all that belongs in them are passed over.
+fn chosen_rooms(mix: Mix, mechanics: &Mechanics) -> Vec<(u64, Level, Report)> {
+    let (mut chosen, mut left) = (Vec::new(), ROOMS);
+    for seed in 0.. {
+        let level = rooms::room(mix, seed);
+        let Ok(rules) = Rules::compile(mechanics, &level) else {
+            continue;
+        };
+        let report = solve(&rules, Prove::Both, &Limits::default(), &mut ());
+        let sort = match report.outcome {
+            Outcome::Solvable => 0,
+            Outcome::Unsolvable => 1,
+            Outcome::Undecided(reason) => panic!("{mix:?} {seed} undecided: {reason:?}"),
+        };
+        if left[sort] > 0 {
+            left[sort] -= 1;
+            chosen.push((seed, level, report));
+        }
+        if left == [0, 0] {
+            break;
+        }
+    }
+    chosen
+}
 
 /// What the planner says: the least cost, or none if it proved that there is no plan; with its own search time in seconds.
 fn plan(python: &str, folder: &Path, domain: &str, problem: &str) -> (Option<u32>, f64) {
@@ -66,38 +92,26 @@ fn par_steps_and_pushes_are_those_of_a_classical_planner() {
     let python = std::env::var("FOLDWRIGHT_PLANNER")
         .expect("FOLDWRIGHT_PLANNER names a Python with up-fast-downward");
     let folder = tempfile::tempdir().expect("a temporary folder");
-    println!("mix          rooms  solvable  planner s   ours s   ratio");
+    println!("mix          rooms  planner s   ours s   ratio");
     for mix in Mix::ALL {
-        let (mut solvable, mut planner_seconds, mut our_seconds) = (0, 0.0, 0.0);
+        let (mut planner_seconds, mut our_seconds) = (0.0, 0.0);
         let mechanics = rooms::mechanics(mix);
-        for seed in 0..ROOMS {
-            let level = rooms::room(mix, seed);
-            let rules = Rules::compile(&mechanics, &level).expect("a valid room");
-            let report = solve(&rules, Prove::Both, &Limits::default(), &mut ());
-            assert!(
-                !matches!(report.outcome, Outcome::Undecided(_)),
-                "{mix:?} {seed} undecided"
-            );
+        let rooms = chosen_rooms(mix, &mechanics);
+        for (seed, level, report) in &rooms {
             let ours = [report.steps, report.pushes]
                 .map(|figure| figure.map(|figure| (figure.fewest, figure.proved)));
             for (measure, ours) in [Measure::Steps, Measure::Pushes].into_iter().zip(ours) {
-                let problem = pddl::problem(&mechanics, &level);
+                let problem = pddl::problem(&mechanics, level);
                 let (theirs, seconds) =
                     plan(&python, folder.path(), &pddl::domain(measure), &problem);
                 planner_seconds += seconds;
-                assert_eq!(
-                    ours,
-                    theirs.map(|cost| (cost, true)),
-                    "{mix:?}, seed {seed}, {measure:?}"
-                );
+                let theirs = theirs.map(|cost| (cost, true));
+                assert_eq!(ours, theirs, "{mix:?}, seed {seed}, {measure:?}");
             }
             our_seconds += report.seconds;
-            solvable += u32::from(report.outcome == Outcome::Solvable);
         }
-        let ratio = planner_seconds / our_seconds;
-        println!(
-            "{:<12} {ROOMS:>5}  {solvable:>8}  {planner_seconds:>9.3}  {our_seconds:>7.4}  {ratio:>6.0}",
-            format!("{mix:?}")
-        );
+        let (count, ratio) = (rooms.len(), planner_seconds / our_seconds);
+        let name = format!("{mix:?}");
+        println!("{name:<12} {count:>5}  {planner_seconds:>9.3}  {our_seconds:>7.4}  {ratio:>6.0}");
     }
 }
