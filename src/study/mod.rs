@@ -15,6 +15,7 @@ mod solve;
 mod space;
 mod tiles;
 mod trail;
+mod wander;
 
 pub use certificate::{Uncertified, certificate};
 pub use map::{Fold, FoldId, FoldMap, Passage};
@@ -22,6 +23,8 @@ pub use report::{
     Bounds, Figure, Halt, Limits, MapCounts, Outcome, Progress, Prove, Report, Stage, TileClass,
     UndecidedReason, Watch,
 };
+
+pub use wander::{Steps, Wandered, wander};
 
 use crate::rules::Rules;
 
