@@ -194,7 +194,7 @@ fn the_same_limit_in_positions_gives_the_same_answer() {
             continue;
         };
         let limits = Limits {
-            positions: Some(300),
+            positions: Some(60),
             ..unlimited()
         };
         let run = || {

@@ -43,6 +43,13 @@ impl Scratch {
     }
 }
 
+impl Scratch {
+    /// Whether each item of the position last loaded is left.
+    pub(crate) fn items_left(&self) -> &[bool] {
+        &self.item_left
+    }
+}
+
 impl Tables {
     /// Every ground that a cell has or may get.
     pub(crate) fn options_of(&self, cell: u16) -> &[u16] {

@@ -43,6 +43,9 @@ struct Node {
 
 const NO_NODE: u32 = u32::MAX;
 
+/// What is ahead of a node that is a dead end.
+const DEAD: u32 = u16::MAX as u32;
+
 /// How much the hint outweighs the length so far when any route will do. The length keeps a search without any hint broad.
 const HINT_WEIGHT: u32 = 4;
 
@@ -194,6 +197,7 @@ impl Engine {
         let (id, new) = self.ids.insert(&[self.word(roam, place)]);
         let ahead = if new {
             self.ahead(graph, roam, place)
+                .map_or(DEAD, |ahead| ahead.min(DEAD - 1))
         } else {
             let node = self.nodes[id as usize];
             if node.cost <= cost || self.aim == Aim::First {
@@ -205,13 +209,16 @@ impl Engine {
             cost,
             parent,
             label,
-            ahead: ahead.min(u32::from(u16::MAX)) as u16,
+            ahead: ahead as u16,
             open: true,
         };
         if new {
             self.nodes.push(node);
         } else {
             self.nodes[id as usize] = node;
+        }
+        if ahead == DEAD {
+            return Ok(());
         }
         let worth = self.aim == Aim::First || cost.saturating_add(ahead) < upper;
         if graph.is_finished(roam) {
@@ -227,10 +234,10 @@ impl Engine {
         Ok(())
     }
 
-    fn ahead<S: StateSpace>(&self, graph: &mut Folded<S>, roam: RoamId, place: u16) -> u32 {
+    fn ahead<S: StateSpace>(&self, graph: &mut Folded<S>, roam: RoamId, place: u16) -> Option<u32> {
         match self.aim {
-            Aim::First => graph.steps_ahead(roam),
-            Aim::Pushes => graph.pushes_ahead(roam),
+            Aim::First => Some(graph.steps_ahead(roam)),
+            Aim::Pushes => Some(graph.pushes_ahead(roam)),
             Aim::Steps => graph.entry_steps_ahead(roam, place),
         }
     }

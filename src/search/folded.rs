@@ -117,7 +117,9 @@ impl<S: StateSpace> Folded<S> {
         let arrival = self.space.start(&mut key);
         let roam = self.roam_of(&key, arrival);
         self.key_room = key;
-        Ok((roam?, arrival.place))
+        let roam = roam?;
+        self.cut += u64::from(roam == NO_ROAM);
+        Ok((roam, arrival.place))
     }
 
     /// Number of roams found.
@@ -175,15 +177,16 @@ impl<S: StateSpace> Folded<S> {
         if bound == DEAD { 0 } else { u32::from(bound) }
     }
 
-    /// Fewest steps ahead of an entry, at least.
-    pub fn entry_steps_ahead(&mut self, roam: RoamId, place: u16) -> u32 {
+    /// Fewest steps ahead of an entry, at least; none if it is a dead end, which then counts as cut.
+    pub fn entry_steps_ahead(&mut self, roam: RoamId, place: u16) -> Option<u32> {
         let record = &self.roams[roam as usize];
         if record.finished || !self.prune {
-            return 0;
+            return Some(0);
         }
         let key = record.key;
         let ahead = self.space.steps_ahead(self.keys.row(key), place);
-        ahead.max(self.steps_ahead(roam))
+        self.cut += u64::from(ahead.is_none());
+        Some(ahead?.max(self.steps_ahead(roam)))
     }
 
     /// The edges of a roam that was opened; none before.

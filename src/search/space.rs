@@ -32,9 +32,9 @@ pub trait StateSpace {
     /// What is known ahead of a position that is not finished, from its key alone.
     fn outlook(&mut self, key: &[u64]) -> Outlook;
 
-    /// Fewest steps from a position to a finished one, at least, given its place too. Like [`Outlook`], must never exceed the
-    /// truth, nor fall by more than a step costs. `u32::MAX` is not allowed: dead ends are for `outlook` to tell.
-    fn steps_ahead(&mut self, key: &[u64], place: u16) -> u32;
+    /// Fewest steps from a position to a finished one, at least, given its place too; none if that is proved to be a dead end.
+    /// Under the contract of [`Outlook`].
+    fn steps_ahead(&mut self, key: &[u64], place: u16) -> Option<u32>;
 }
 
 /// Where a step leads, beside the key.

@@ -84,7 +84,7 @@ pub(super) struct Closed<'a> {
 /// Looks at everything that can be reached, without any bound.
 pub(super) fn close<'a>(rules: &'a Rules, limits: &Limits) -> Result<Closed<'a>, UndecidedReason> {
     let mut meter = Meter::new(limits);
-    let space = LevelSpace::new(rules, Bounds::none());
+    let space = LevelSpace::new(rules, Bounds::none(rules));
     let mut graph = Folded::new(space, limits.bytes, false);
     let mut closure = Closure::new();
     while closure

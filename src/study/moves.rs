@@ -95,7 +95,7 @@ impl StateSpace for MoveSpace<'_> {
         self.bounds.moves_outlook(self.rules, &self.scratch, last)
     }
 
-    fn steps_ahead(&mut self, _key: &[u64], _place: u16) -> u32 {
-        0
+    fn steps_ahead(&mut self, _key: &[u64], _place: u16) -> Option<u32> {
+        Some(0)
     }
 }

@@ -89,7 +89,11 @@ impl Run<'_> {
             self.arrive(&[]);
             return Ok(());
         }
-        self.steps_low = graph.entry_steps_ahead(roam, place);
+        let Some(steps_low) = graph.entry_steps_ahead(roam, place) else {
+            self.unsolvable = true;
+            return Ok(());
+        };
+        self.steps_low = steps_low;
         self.pushes_low = graph.pushes_ahead(roam);
         let drag = self.rules.control() == Control::Drag;
         let first = match prove {

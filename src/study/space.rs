@@ -17,6 +17,8 @@ pub(super) struct LevelSpace<'a> {
     there: Vec<u64>,
     /// For each cell: positions folded away with a walker on it; with cargo, under Drag.
     pub heat: Vec<u64>,
+    /// Cells that walks within roams come onto. The scratch notes all other steps.
+    walked: Vec<bool>,
 }
 
 impl<'a> LevelSpace<'a> {
@@ -30,12 +32,16 @@ impl<'a> LevelSpace<'a> {
             here: vec![0; words],
             there: vec![0; words],
             heat: vec![0; rules.tables().size.area()],
+            walked: vec![false; rules.tables().size.area()],
         }
     }
 
     /// For each cell: whether a body ever came onto it or stood there at the start, in what was looked at.
     pub fn touched(&self) -> Vec<bool> {
         let mut touched = self.scratch.touched().to_vec();
+        for (touched, &walked) in touched.iter_mut().zip(&self.walked) {
+            *touched |= walked;
+        }
         let tables = self.rules.tables();
         for (slot, &anchor) in tables.start_at.iter().enumerate() {
             for cell in tables.cells_of(slot, anchor) {
@@ -114,8 +120,11 @@ impl StateSpace for LevelSpace<'_> {
         }
         self.rules
             .roam(&mut self.scratch, &self.here, &mut self.roam);
+        // Links lead both ways, so with two members or more a walk comes onto each.
+        let links = self.roam.members.len() > 1;
         for member in &self.roam.members {
             self.heat[usize::from(member.cell)] += 1;
+            self.walked[usize::from(member.cell)] |= links;
             members.push(self.place_of(member.cell));
         }
     }
@@ -171,12 +180,12 @@ impl StateSpace for LevelSpace<'_> {
         self.bounds.outlook(self.rules, &self.scratch)
     }
 
-    fn steps_ahead(&mut self, key: &[u64], place: u16) -> u32 {
+    fn steps_ahead(&mut self, key: &[u64], place: u16) -> Option<u32> {
         if !self.bounds.asks_for_place() {
-            return 0;
+            return Some(0);
         }
         self.load(key, place);
         self.rules.load(&mut self.scratch, &self.here);
-        self.bounds.steps_ahead(self.rules, &self.scratch)
+        self.bounds.walks(&self.scratch)
     }
 }
