@@ -8,9 +8,7 @@ mod made;
 
 use foldwright::level::{Level, Mechanics};
 use foldwright::rules::Rules;
-use foldwright::study::{
-    Limits, Outcome, Prove, map_counts, solve, solve_general, tile_classes,
-};
+use foldwright::study::{Limits, Outcome, Prove, map_counts, solve, solve_general, tile_classes};
 use std::time::{Duration, Instant};
 
 fn main() {
@@ -58,10 +56,16 @@ fn row(name: &str, times: &[f64]) {
 }
 
 fn table() {
-    println!("{:<52} {:>5} {:>9} {:>9} {:>9}", "milliseconds", "many", "median", "95 %", "greatest");
+    println!(
+        "{:<52} {:>5} {:>9} {:>9} {:>9}",
+        "milliseconds", "many", "median", "95 %", "greatest"
+    );
     let push = compiled(&made::push_only(100, 10, 10, 4));
     table_of("10 x 10, 4 cargo, push-only", &push);
-    row("  fold map", &times(&push, |rules| drop(map_counts(rules, &limits()))));
+    row(
+        "  fold map",
+        &times(&push, |rules| drop(map_counts(rules, &limits()))),
+    );
     let mixed = compiled(&made::mixed(200));
     table_of("8 x 8 to 12 x 12, mixed traits", &mixed);
     tiles();
@@ -94,10 +98,14 @@ fn table_of(name: &str, rules: &[Rules]) {
         });
         row(&format!("  {what}, general lane"), &taken);
         if undecided + unproved + unsolvable > 0 {
-            println!("    of these {unsolvable} unsolvable, {undecided} undecided, {unproved} solvable but not proved");
+            println!(
+                "    of these {unsolvable} unsolvable, {undecided} undecided, {unproved} solvable but not proved"
+            );
         }
     }
-    let taken = times(rules, |rules| drop(solve(rules, Prove::Steps, &limits(), &mut ())));
+    let taken = times(rules, |rules| {
+        drop(solve(rules, Prove::Steps, &limits(), &mut ()))
+    });
     row("  fewest steps proved, lane as chosen", &taken);
 }
 

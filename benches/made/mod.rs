@@ -27,9 +27,11 @@ fn id(text: &str) -> KindId {
 pub fn mechanics() -> Mechanics {
     let ground = |name: &str| GroundKind::plain(id(name), name);
     let cargo = |name: &str| BodyKind::plain(id(name), name, Role::Cargo);
-    let mut kinds = ["floor", "wall", "home", "moss", "drain", "slab", "sluice", "door", "rotten"]
-        .map(ground)
-        .to_vec();
+    let mut kinds = [
+        "floor", "wall", "home", "moss", "drain", "slab", "sluice", "door", "rotten",
+    ]
+    .map(ground)
+    .to_vec();
     kinds[1].closed_to = vec![Role::Walker, Role::Cargo];
     kinds[2].home = ["planter", "sack", "reel"].map(id).to_vec();
     kinds[3].slick = true;
@@ -69,7 +71,12 @@ pub fn mechanics() -> Mechanics {
 }
 
 /// Push-only levels with a par of over 20 steps.
-pub fn push_only(many: usize, width: usize, height: usize, cargo: usize) -> Vec<(Mechanics, Level)> {
+pub fn push_only(
+    many: usize,
+    width: usize,
+    height: usize,
+    cargo: usize,
+) -> Vec<(Mechanics, Level)> {
     let quick = Limits {
         time: Some(Duration::from_secs(20)),
         ..Limits::default()
@@ -211,7 +218,11 @@ fn mix(mechanics: &Mechanics, seed: u64) -> Option<Level> {
 }
 
 /// Plays at random, and makes homes where the cargo is when it has gone farthest.
-fn want_where_cargo_goes(rng: &mut StdRng, mechanics: &Mechanics, level: &mut Level) -> Option<Level> {
+fn want_where_cargo_goes(
+    rng: &mut StdRng,
+    mechanics: &Mechanics,
+    level: &mut Level,
+) -> Option<Level> {
     let rules = Rules::compile_open(mechanics, level).ok()?;
     let start = cargo_cells(&rules, mechanics, &rules.start());
     let mut here = rules.start();
@@ -230,7 +241,13 @@ fn want_where_cargo_goes(rng: &mut StdRng, mechanics: &Mechanics, level: &mut Le
         let moved = homes.iter().filter(|cell| !start.contains(cell)).count();
         let spread: usize = homes
             .iter()
-            .map(|home| start.iter().map(|from| apart(*home, *from)).min().unwrap_or(0))
+            .map(|home| {
+                start
+                    .iter()
+                    .map(|from| apart(*home, *from))
+                    .min()
+                    .unwrap_or(0)
+            })
             .sum();
         if homes.len() == cells.len() && moved > 0 && spread > best.0 {
             best = (spread, homes);

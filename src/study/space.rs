@@ -119,7 +119,7 @@ impl StateSpace for LevelSpace<'_> {
             return;
         }
         self.rules
-            .roam(&mut self.scratch, &self.here, &mut self.roam);
+            .roam_members(&mut self.scratch, &self.here, &mut self.roam);
         // Links lead both ways, so with two members or more a walk comes onto each.
         let links = self.roam.members.len() > 1;
         for member in &self.roam.members {
@@ -168,7 +168,7 @@ impl StateSpace for LevelSpace<'_> {
         }
         self.load(key, place);
         self.rules
-            .roam(&mut self.scratch, &self.here, &mut self.roam);
+            .roam_members(&mut self.scratch, &self.here, &mut self.roam);
         distances.fill(u16::MAX);
         for member in &self.roam.members {
             distances[usize::from(self.place_of(member.cell))] = member.distance;
