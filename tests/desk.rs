@@ -500,6 +500,7 @@ fn unsaved_changes_are_asked_about_before_they_are_dropped() {
     window.paint(&[(5, 1)]);
     window.act(Action::CreatePack {
         name: "Other".to_owned(),
+        start: None,
     });
     window.wait_to_see("Save the changes?");
     window.0.get_by_label("Cancel").click();
@@ -509,6 +510,7 @@ fn unsaved_changes_are_asked_about_before_they_are_dropped() {
     assert_eq!(window.desk().state.pack.name, "Test bed");
     window.act(Action::CreatePack {
         name: "Other".to_owned(),
+        start: None,
     });
     window.0.get_by_label("Save").click();
     window.wait("the new pack is on the desk", |window| {

@@ -11,10 +11,12 @@ pub enum Action {
     // --- File -----------------------------------------------------------------------------------------------------
     /// Ask for the name of a new pack.
     NewPack,
-    /// Begin a new pack with the kinds of the present one; asks about unsaved changes first.
+    /// Begin a new pack; asks about unsaved changes first.
     CreatePack {
         /// Its name.
         name: String,
+        /// Which of [`crate::file::STARTS`] it begins with; none for the kinds of the present pack.
+        start: Option<usize>,
     },
     /// Ask which pack to open.
     Open,

@@ -4,6 +4,7 @@ use super::action::Action;
 use super::keys::{COMMANDS, Menu, OTHER_KEYS};
 use super::state::{Dialog, PathPurpose, State, UnsavedChoice};
 use super::theme::Theme;
+use crate::file::STARTS;
 use crate::level::MAX_SIDE;
 use egui::{
     Align, Button, DragValue, Grid, Id, Key, Layout, Modal, RichText, ScrollArea, TextEdit, Ui,
@@ -36,19 +37,21 @@ pub fn show(ui: &mut Ui, state: &State, actions: &mut Vec<Action>) {
 fn width_of(dialog: &Dialog) -> f32 {
     match dialog {
         Dialog::Keys | Dialog::Message { .. } | Dialog::Path { .. } => 540.0,
+        Dialog::NewPack { .. } => 440.0,
         _ => 360.0,
     }
 }
 
 fn body(ui: &mut Ui, state: &State, dialog: &mut Dialog, actions: &mut Vec<Action>) {
     match dialog {
-        Dialog::NewPack { name } => {
+        Dialog::NewPack { name, start } => {
             heading(ui, "New pack");
-            ui.label(
-                "It takes over the kinds of the pack on the desk and begins with one empty level.",
-            );
             let ready = named(ui, "Name", name);
-            let action = Action::CreatePack { name: name.clone() };
+            starting_points(ui, start);
+            let action = Action::CreatePack {
+                name: name.clone(),
+                start: *start,
+            };
             decide(ui, "Begin", ready, action, actions);
         }
         Dialog::NewLevel {
@@ -110,6 +113,23 @@ fn heading(ui: &mut Ui, text: &str) {
 }
 
 /// A field for a name. Returns whether it is filled.
+/// The starting points with what each is for; the last line takes over the kinds of the pack on the desk.
+fn starting_points(ui: &mut Ui, start: &mut Option<usize>) {
+    ui.label("Begin with the mechanics of");
+    ScrollArea::vertical().max_height(300.0).show(ui, |ui| {
+        for (at, point) in STARTS.iter().enumerate() {
+            ui.horizontal_wrapped(|ui| {
+                ui.radio_value(start, Some(at), point.name);
+                ui.label(RichText::new(point.about).color(Theme::of(ui).muted));
+            });
+        }
+        ui.horizontal_wrapped(|ui| {
+            ui.radio_value(start, None, "The pack on the desk");
+            ui.label(RichText::new("its kinds and one empty level").color(Theme::of(ui).muted));
+        });
+    });
+}
+
 fn named(ui: &mut Ui, label: &str, name: &mut String) -> bool {
     ui.horizontal(|ui| {
         let label = ui.label(label);

@@ -80,6 +80,7 @@ impl State {
             Action::NewPack => {
                 self.dialog = Some(Dialog::NewPack {
                     name: "New pack".to_owned(),
+                    start: Some(0),
                 });
             }
             Action::Open if !self.asks_first(&action) => self.effects.push(Effect::PickToOpen),
@@ -87,8 +88,8 @@ impl State {
                 self.effects.push(Effect::Read(path.clone()));
             }
             Action::OpenNow(path) => self.effects.push(Effect::Read(path)),
-            Action::CreatePack { ref name } if !self.asks_first(&action) => {
-                self.create_pack(name.clone());
+            Action::CreatePack { ref name, start } if !self.asks_first(&action) => {
+                self.create_pack(name.clone(), start);
             }
             Action::Quit if !self.asks_first(&action) => self.close(),
             Action::Save => match self.path.clone() {
@@ -151,7 +152,7 @@ impl State {
         match action {
             Action::Open => self.effects.push(Effect::PickToOpen),
             Action::OpenPath(path) => self.effects.push(Effect::Read(path)),
-            Action::CreatePack { name } => self.create_pack(name),
+            Action::CreatePack { name, start } => self.create_pack(name, start),
             Action::Quit => self.close(),
             other => self.execute(other),
         }

@@ -84,11 +84,18 @@ pub enum FileNews {
 
 impl State {
     /// Begins a new pack with the kinds of the present one and an empty level.
-    pub(super) fn create_pack(&mut self, name: String) {
-        let pack = Pack {
-            name,
-            mechanics: Arc::clone(self.mechanics()),
-            levels: Vec::new(),
+    pub(super) fn create_pack(&mut self, name: String, start: Option<usize>) {
+        let begun = start
+            .and_then(|at| crate::file::STARTS.get(at))
+            .and_then(|start| crate::file::read_pack(start.text).ok())
+            .map(|read| read.pack);
+        let pack = match begun {
+            Some(pack) => Pack { name, ..pack },
+            None => Pack {
+                name,
+                mechanics: Arc::clone(self.mechanics()),
+                levels: Vec::new(),
+            },
         };
         self.put_on_desk(pack, None, None, String::new());
         self.said = "began a new pack".to_owned();

@@ -179,10 +179,12 @@ pub enum PathPurpose {
 /// The dialog that is open, with its fields.
 #[derive(Clone, Debug, PartialEq)]
 pub enum Dialog {
-    /// Name of a new pack.
+    /// Name and kinds of a new pack.
     NewPack {
         /// Its name.
         name: String,
+        /// Which of [`crate::file::STARTS`] it begins with; none for the kinds of the present pack.
+        start: Option<usize>,
     },
     /// Name and size of a new level.
     NewLevel {

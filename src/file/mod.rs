@@ -11,6 +11,7 @@ mod locate;
 mod mechanics;
 mod pictures;
 mod read;
+mod starts;
 mod wire;
 mod write;
 
@@ -23,4 +24,5 @@ pub use keep::{Autosave, DATA_VARIABLE, DataFolder, Recoverable};
 pub use links::refusal;
 pub use pictures::{Artwork, PictureError, Pixels};
 pub use read::{ReadPack, read_pack};
+pub use starts::{STARTS, Start};
 pub use write::write_pack;
