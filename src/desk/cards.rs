@@ -1,7 +1,7 @@
 //! The cards of the findings and the lines on them.
 
 use super::theme::Theme;
-use egui::{Align, CollapsingHeader, Layout, Response, RichText, Ui};
+use egui::{Align, CollapsingHeader, InnerResponse, Layout, Response, RichText, Ui};
 
 /// A card that can be folded; `key` stays the same when the title changes. The content is drawn only while it is open.
 pub fn folding_card(ui: &mut Ui, key: &str, title: &str, content: impl FnOnce(&mut Ui)) {
@@ -15,13 +15,24 @@ pub fn folding_card(ui: &mut Ui, key: &str, title: &str, content: impl FnOnce(&m
     });
 }
 
+/// A row of text that nobody clicks: only as high as its text.
+pub fn quiet_row(ui: &mut Ui, content: impl FnOnce(&mut Ui)) -> InnerResponse<()> {
+    ui.scope(|ui| {
+        ui.spacing_mut().interact_size.y = 16.0;
+        ui.horizontal(content);
+    })
+}
+
 /// A line with a caption at the left and its figure at the right end.
 pub fn figure_line(ui: &mut Ui, caption: &str, figure: &str) -> Response {
     let theme = Theme::of(ui);
-    ui.horizontal(|ui| {
-        ui.label(RichText::new(caption).color(theme.muted));
+    quiet_row(ui, |ui| {
         ui.with_layout(Layout::right_to_left(Align::Center), |ui| {
             ui.label(RichText::new(figure).color(theme.text));
+            ui.with_layout(Layout::left_to_right(Align::Center), |ui| {
+                let caption = RichText::new(caption).color(theme.muted);
+                ui.add(egui::Label::new(caption).truncate());
+            });
         });
     })
     .response

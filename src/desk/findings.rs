@@ -2,7 +2,7 @@
 
 use super::action::Action;
 use super::answers::Tiles;
-use super::cards::{figure_line, folding_card};
+use super::cards::{figure_line, folding_card, quiet_row};
 use super::marks::{Mark, hatch};
 use super::pictures::Pictures;
 use super::state::State;
@@ -16,7 +16,7 @@ use egui::{
 };
 
 /// Draws the findings and pushes what the user did.
-pub fn show(ui: &mut Ui, state: &State, _pictures: &mut Pictures, actions: &mut Vec<Action>) {
+pub fn show(ui: &mut Ui, state: &State, pictures: &mut Pictures, actions: &mut Vec<Action>) {
     ScrollArea::vertical()
         .id_salt("findings")
         .auto_shrink(false)
@@ -28,6 +28,9 @@ pub fn show(ui: &mut Ui, state: &State, _pictures: &mut Pictures, actions: &mut 
                 ui.spacing_mut().item_spacing.y = 10.0;
                 if !state.problems.is_empty() {
                     problems_card(ui, state, actions);
+                }
+                if !pictures.faults().is_empty() {
+                    pictures_card(ui, state, pictures);
                 }
                 shape_card(ui, state);
                 tiles_card(ui, state);
@@ -158,6 +161,16 @@ fn problem_line(ui: &mut Ui, state: &State, problem: &Problem, actions: &mut Vec
                 problem.cells.clone()
             };
             actions.push(Action::MarkCells(cells));
+        }
+    });
+}
+
+/// Picture files that can't be shown.
+fn pictures_card(ui: &mut Ui, state: &State, pictures: &Pictures) {
+    folding_card(ui, "pictures", "Pictures", |ui| {
+        for (kind, fault) in pictures.faults() {
+            let text = format!("{}: {fault}", kind.label(state.mechanics()));
+            ui.add(egui::Label::new(RichText::new(text)).wrap());
         }
     });
 }
@@ -316,7 +329,7 @@ fn class_line(ui: &mut Ui, tiles: &Tiles, class: TileClass, name: &str, meaning:
         .iter()
         .filter(|known| **known == Some(class))
         .count();
-    ui.horizontal(|ui| {
+    quiet_row(ui, |ui| {
         swatch(ui, class);
         ui.label(RichText::new(name).color(theme.muted));
         ui.with_layout(Layout::right_to_left(Align::Center), |ui| {

@@ -26,6 +26,7 @@ pub mod playback;
 pub mod shapes;
 pub mod shelf;
 mod shelf_lines;
+mod sources;
 pub mod state;
 mod status;
 mod stroke;

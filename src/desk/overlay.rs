@@ -84,6 +84,9 @@ fn tiles(painter: &Painter, state: &State, place: &Place) {
     let opacity = if fresh { 0.8 } else { 0.8 * STALE_OPACITY };
     let ink = Theme::DARK.muted.gamma_multiply(opacity);
     let stroke = Stroke::new((place.cell_points / 36.0).clamp(1.0, 1.8), ink);
+    // A dark line under the light one keeps the hatching apart from bright heat as well.
+    let shade = Theme::DARK.ground.gamma_multiply(opacity);
+    let under = Stroke::new(stroke.width * 2.2, shade);
     for cell in place.cells_in_view() {
         let Some(class) = classes[place.size.index(cell)] else {
             continue;
@@ -94,7 +97,9 @@ fn tiles(painter: &Painter, state: &State, place: &Place) {
             TileClass::Idle | TileClass::CutOff => {
                 let inner = rect.shrink(place.cell_points * 0.06);
                 let gap = (place.cell_points / 5.0).max(4.0);
-                hatch(painter, inner, gap, stroke, class == TileClass::CutOff);
+                let crossed = class == TileClass::CutOff;
+                hatch(painter, inner, gap, under, crossed);
+                hatch(painter, inner, gap, stroke, crossed);
             }
             TileClass::Vital | TileClass::Useful if place.cell_points >= 18.0 => {
                 let side = (place.cell_points * 0.2).clamp(7.0, 13.0);

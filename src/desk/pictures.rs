@@ -1,17 +1,17 @@
 //! Pictures of kinds as textures, crisp at every zoom.
 //!
 //! A kind is drawn from the first of these that there is: the picture of its `look`, the built-in picture of its id, the
-//! shape of its `look`, a shape made from its traits ([`super::shapes`]). All of them end as a small square image for each
+//! shape of its `look`, a shape made from its traits ([`super::shapes`]). Picture files are read beside the window; until
+//! they are there, and where one can't be read, the kind shows what it would show without. All of them end as a small square image for each
 //! size in use. Sizes are rounded up to a bucket, so that zooming makes a few images and not one a frame; a frame spends
 //! only [`FRAME_BUDGET`] on making them, shows the nearest size that it has meanwhile, and asks to be drawn again. The
 //! cost in memory is bounded: past [`MOST_BYTES`] the sizes that the last frame did not use are given back.
 
-use super::shapes;
-use crate::level::{
-    BodyIx, Brush, Cell, Dir, GroundIx, GroundKind, ItemIx, KindId, Look, Mechanics,
-};
+use super::sources::{self, Source};
+use crate::level::{BodyIx, Brush, Cell, GroundIx, ItemIx, Mechanics};
+use crate::worker::run_aside;
+use crossbeam_channel::Receiver;
 use egui::{Color32, ColorImage, Mesh, Painter, Pos2, Rect, TextureHandle, TextureOptions};
-use resvg::{tiny_skia, usvg};
 use rustc_hash::FxHashMap;
 use std::path::{Path, PathBuf};
 use std::sync::Arc;
@@ -47,12 +47,15 @@ impl Kind {
             Brush::Clear => None,
         }
     }
-}
 
-/// What a kind's images are made from.
-enum Source {
-    Drawn { tree: usvg::Tree, turn_degrees: f32 },
-    Flat(Color32),
+    /// What people call it.
+    pub fn label(self, mechanics: &Mechanics) -> &str {
+        match self {
+            Kind::Ground(ix) => &mechanics.ground(ix).label,
+            Kind::Body(ix) => &mechanics.body(ix).label,
+            Kind::Item(ix) => &mechanics.item(ix).label,
+        }
+    }
 }
 
 struct Image {
@@ -66,6 +69,8 @@ struct Image {
 pub struct Pictures {
     mechanics: Option<Arc<Mechanics>>,
     folder: Option<PathBuf>,
+    reading: Option<Receiver<Vec<sources::Read>>>,
+    faults: Vec<(Kind, String)>,
     sources: FxHashMap<Kind, Source>,
     images: FxHashMap<Kind, Vec<Image>>,
     colours: FxHashMap<Kind, Color32>,
@@ -79,15 +84,10 @@ pub struct Pictures {
 }
 
 impl Pictures {
-    /// No pictures yet.
-    pub fn new() -> Pictures {
-        Pictures::default()
-    }
-
     /// Once a frame, before anything is painted: notes which kinds there are and in which folder their picture files lie.
     pub fn begin_frame(
         &mut self,
-        _ctx: &egui::Context,
+        ctx: &egui::Context,
         mechanics: &Arc<Mechanics>,
         folder: Option<&Path>,
     ) {
@@ -101,14 +101,52 @@ impl Pictures {
                 frame: self.frame,
                 ..Pictures::default()
             };
+            self.read_files(ctx, mechanics);
         }
         self.mechanics = Some(Arc::clone(mechanics));
+        self.take_files();
         self.frame += 1;
         self.thumbnails.begin_frame();
         self.spent = Duration::ZERO;
         self.made = 0;
         if self.bytes > MOST_BYTES {
             self.give_back();
+        }
+    }
+
+    /// The kinds whose picture files can't be shown, with a sentence on what to do.
+    pub fn faults(&self) -> &[(Kind, String)] {
+        &self.faults
+    }
+
+    fn read_files(&mut self, ctx: &egui::Context, mechanics: &Mechanics) {
+        let wanted = sources::own_pictures(mechanics);
+        let Some(folder) = self.folder.clone().filter(|_| !wanted.is_empty()) else {
+            return;
+        };
+        let wake = ctx.clone();
+        self.reading = Some(run_aside(
+            move || sources::read(folder, wanted),
+            move || wake.request_repaint(),
+        ));
+    }
+
+    fn take_files(&mut self) {
+        let Some(Ok(read)) = self.reading.as_ref().map(Receiver::try_recv) else {
+            return;
+        };
+        self.reading = None;
+        for (kind, result) in read {
+            match result {
+                Ok(source) => {
+                    self.sources.insert(kind, source);
+                    self.images.remove(&kind);
+                    self.colours.remove(&kind);
+                    self.small.retain(|(known, _), _| *known != kind);
+                    self.thumbnails = super::thumbnail::Thumbnails::default();
+                }
+                Err(fault) => self.faults.push((kind, fault)),
+            }
         }
     }
 
@@ -177,7 +215,7 @@ impl Pictures {
             return *colour;
         }
         let colour = match self.source(kind) {
-            Some(source) => mean(&rasterise(source, 16)),
+            Some(source) => mean(&source.image(16)),
             None => Color32::GRAY,
         };
         self.colours.insert(kind, colour);
@@ -191,7 +229,7 @@ impl Pictures {
         }
         let image = self
             .source(kind)
-            .map(|source| Arc::new(rasterise(source, pixels)));
+            .map(|source| Arc::new(source.image(pixels)));
         self.small.insert((kind, pixels), image.clone());
         image
     }
@@ -219,7 +257,7 @@ impl Pictures {
 
     fn make(&mut self, ctx: &egui::Context, kind: Kind, pixels: u32) -> Option<egui::TextureId> {
         let since = Instant::now();
-        let image = rasterise(self.source(kind)?, pixels);
+        let image = self.source(kind)?.image(pixels);
         let texture = ctx.load_texture(format!("{kind:?} {pixels}"), image, TextureOptions::LINEAR);
         let id = texture.id();
         self.images.entry(kind).or_default().push(Image {
@@ -235,7 +273,7 @@ impl Pictures {
 
     fn source(&mut self, kind: Kind) -> Option<&Source> {
         if !self.sources.contains_key(&kind) {
-            let source = find_source(self.mechanics.as_ref()?, self.folder.as_deref(), kind)?;
+            let source = sources::find(self.mechanics.as_ref()?, kind)?;
             self.sources.insert(kind, source);
         }
         self.sources.get(&kind)
@@ -271,96 +309,6 @@ fn bucket(side: f32) -> u32 {
     side.div_ceil(step) * step
 }
 
-fn find_source(mechanics: &Mechanics, folder: Option<&Path>, kind: Kind) -> Option<Source> {
-    let (look, id, one_way) = match kind {
-        Kind::Ground(ix) => {
-            let kind = mechanics.grounds.get(usize::from(ix.0))?;
-            (&kind.look, &kind.id, Some(kind))
-        }
-        Kind::Body(ix) => {
-            let kind = mechanics.bodies.get(usize::from(ix.0))?;
-            (&kind.look, &kind.id, None)
-        }
-        Kind::Item(ix) => {
-            let kind = mechanics.items.get(usize::from(ix.0))?;
-            (&kind.look, &kind.id, None)
-        }
-    };
-    let drawn = match look {
-        Some(Look::Picture(picture)) => folder.and_then(|folder| own_picture(folder, picture)),
-        Some(Look::Drawing(drawing)) => {
-            parse(shapes::drawing(drawing, one_way.is_some()).as_bytes(), 0.0)
-        }
-        Some(Look::BuiltIn(name)) => built_in(name, one_way),
-        None => None,
-    };
-    drawn
-        .or_else(|| by_id(id, one_way))
-        .or_else(|| {
-            let svg = match kind {
-                Kind::Ground(ix) => shapes::ground(mechanics, mechanics.ground(ix)),
-                Kind::Body(ix) => shapes::body(mechanics, mechanics.body(ix)),
-                Kind::Item(ix) => shapes::item(mechanics, mechanics.item(ix)),
-            };
-            parse(svg.as_bytes(), 0.0)
-        })
-        .or(Some(Source::Flat(Color32::GRAY)))
-}
-
-fn by_id(id: &KindId, ground: Option<&GroundKind>) -> Option<Source> {
-    built_in(id.as_str(), ground)
-}
-
-/// A built-in picture. Those of ground that is entered one way only face east and are turned; where there are several ways in,
-/// the shape from the traits says more.
-fn built_in(name: &str, ground: Option<&GroundKind>) -> Option<Source> {
-    let ways: &[Dir] = ground.map_or(&[], |kind| &kind.enter_only);
-    let turn_degrees = match ways {
-        [] => 0.0,
-        [dir] => shapes::turn_degrees(*dir) as f32,
-        _ => return None,
-    };
-    parse(built_in_svg(name)?, turn_degrees)
-}
-
-fn built_in_svg(_name: &str) -> Option<&'static [u8]> {
-    None
-}
-
-fn own_picture(_folder: &Path, _picture: &crate::level::Picture) -> Option<Source> {
-    None
-}
-
-fn parse(svg: &[u8], turn_degrees: f32) -> Option<Source> {
-    let tree = usvg::Tree::from_data(svg, &usvg::Options::default()).ok()?;
-    Some(Source::Drawn { tree, turn_degrees })
-}
-
-fn rasterise(source: &Source, pixels: u32) -> ColorImage {
-    let side = pixels as usize;
-    match source {
-        Source::Flat(colour) => ColorImage::filled([side, side], *colour),
-        Source::Drawn { tree, turn_degrees } => {
-            let Some(mut pixmap) = tiny_skia::Pixmap::new(pixels, pixels) else {
-                return ColorImage::filled([1, 1], Color32::TRANSPARENT);
-            };
-            let size = tree.size();
-            let middle = pixels as f32 / 2.0;
-            let fit = tiny_skia::Transform::from_scale(
-                pixels as f32 / size.width(),
-                pixels as f32 / size.height(),
-            )
-            .post_concat(tiny_skia::Transform::from_rotate_at(
-                *turn_degrees,
-                middle,
-                middle,
-            ));
-            resvg::render(tree, fit, &mut pixmap.as_mut());
-            ColorImage::from_rgba_premultiplied([side, side], pixmap.data())
-        }
-    }
-}
-
 /// The mean colour of what is opaque.
 fn mean(image: &ColorImage) -> Color32 {
     let mut sums = [0u32; 4];
@@ -391,19 +339,9 @@ mod tests {
     }
 
     #[test]
-    fn a_turned_picture_is_the_picture_turned() {
-        let svg = br##"<svg xmlns="http://www.w3.org/2000/svg" viewBox="0 0 8 8"><rect x="4" y="0" width="4" height="8" fill="#ff0000"/></svg>"##;
-        let image = |turn: f32| rasterise(&parse(svg, turn).expect("it is an SVG"), 8);
-        let red = |image: &ColorImage, x: usize, y: usize| image.pixels[y * 8 + x].r() > 200;
-        let (east, south) = (image(0.0), image(90.0));
-        assert!(red(&east, 6, 1) && !red(&east, 1, 6));
-        assert!(red(&south, 1, 6) && !red(&south, 6, 1));
-    }
-
-    #[test]
     fn the_mean_leaves_out_what_is_transparent() {
-        let svg = br##"<svg xmlns="http://www.w3.org/2000/svg" viewBox="0 0 8 8"><rect width="4" height="8" fill="#204060"/></svg>"##;
-        let colour = mean(&rasterise(&parse(svg, 0.0).expect("it is an SVG"), 8));
-        assert_eq!(colour, Color32::from_rgb(0x20, 0x40, 0x60));
+        let blue = Color32::from_rgb(0x20, 0x40, 0x60);
+        let pixels = vec![blue, Color32::TRANSPARENT, Color32::TRANSPARENT, blue];
+        assert_eq!(mean(&ColorImage::new([2, 2], pixels)), blue);
     }
 }

@@ -155,18 +155,18 @@ fn sun_ring() -> String {
     )
 }
 
-/// By how many degrees, clockwise, a drawing that faces east is turned to face `dir`.
-pub fn turn_degrees(dir: Dir) -> u32 {
+/// By how many quarter turns, clockwise, a drawing that faces east is turned to face `dir`.
+pub fn quarter_turns(dir: Dir) -> u8 {
     match dir {
         Dir::E => 0,
-        Dir::S => 90,
-        Dir::W => 180,
-        Dir::N => 270,
+        Dir::S => 1,
+        Dir::W => 2,
+        Dir::N => 3,
     }
 }
 
 fn entry_arrow(dir: Dir, one_of_several: bool) -> String {
-    let turn = turn_degrees(dir);
+    let turn = 90 * u32::from(quarter_turns(dir));
     let path = if one_of_several {
         "M44 24l9 8-9 8"
     } else {

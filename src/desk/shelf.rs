@@ -16,8 +16,14 @@ use egui::{
 
 pub(super) use super::shelf_lines::Lines;
 
-/// Size of a card, in points.
-const CARD: Vec2 = vec2(132.0, 108.0);
+/// Height of a level's picture, in points, and in a low window.
+const PICTURE_HEIGHT: (f32, f32) = (58.0, 36.0);
+/// Room for what stands under the picture.
+const TEXT_HEIGHT: f32 = 62.0;
+/// Width of a card.
+const CARD_WIDTH: f32 = 132.0;
+/// Windows lower than this have lower cards.
+const LOW_WINDOW: f32 = 720.0;
 /// Room between cards.
 const GAP: f32 = 8.0;
 
@@ -28,25 +34,36 @@ pub fn show(ui: &mut Ui, state: &State, pictures: &mut Pictures, actions: &mut V
     ui.add_space(4.0);
     header(ui, state, &lines, actions);
     ui.add_space(2.0);
-    let stride = CARD.x + GAP;
+    let card_size = card_size(ui);
+    let stride = CARD_WIDTH + GAP;
     let count = lines.lines().len();
     ScrollArea::horizontal()
         .id_salt("shelf")
         .auto_shrink([false, true])
         .show_viewport(ui, |ui, viewport| {
-            let all = vec2(count as f32 * stride, CARD.y + 4.0);
+            let all = vec2(count as f32 * stride, card_size.y + 4.0);
             let (whole, _) = ui.allocate_exact_size(all, Sense::hover());
             follow_selection(ui, state, whole, stride);
             let first = (viewport.left() / stride).floor().max(0.0) as usize;
             let last = ((viewport.right() / stride).ceil().max(0.0) as usize).min(count);
             for index in first..last {
                 let corner = whole.min + vec2(index as f32 * stride, 2.0);
-                let card = Rect::from_min_size(corner, CARD);
+                let card = Rect::from_min_size(corner, card_size);
                 show_card(ui, card, index, &lines, state, pictures, actions);
             }
             drop_mark(ui, whole, stride, count, actions);
         });
     pictures.shelf_lines = lines;
+}
+
+fn card_size(ui: &Ui) -> Vec2 {
+    let low = ui.ctx().content_rect().height() < LOW_WINDOW;
+    let picture = if low {
+        PICTURE_HEIGHT.1
+    } else {
+        PICTURE_HEIGHT.0
+    };
+    vec2(CARD_WIDTH, picture + TEXT_HEIGHT)
 }
 
 fn header(ui: &mut Ui, state: &State, lines: &Lines, actions: &mut Vec<Action>) {
@@ -133,7 +150,7 @@ fn follow_selection(ui: &mut Ui, state: &State, whole: Rect, stride: f32) {
         ui.data_mut(|data| data.insert_temp(id, seen));
         let corner = whole.min + vec2(state.level as f32 * stride, 0.0);
         ui.scroll_to_rect(
-            Rect::from_min_size(corner, CARD).expand2(vec2(GAP, 0.0)),
+            Rect::from_min_size(corner, vec2(CARD_WIDTH, 1.0)).expand2(vec2(GAP, 0.0)),
             None,
         );
     }
@@ -161,7 +178,7 @@ fn show_card(
     response.widget_info(|| WidgetInfo::selected(Role::Button, true, selected, &name));
     paint_frame(ui, card, theme, &response, selected);
     let inner = card.shrink2(vec2(9.0, 7.0));
-    let picture = Rect::from_min_size(inner.min, vec2(inner.width(), 46.0));
+    let picture = Rect::from_min_size(inner.min, vec2(inner.width(), card.height() - TEXT_HEIGHT));
     pictures.paint_level(ui.painter(), level, picture);
     par_bar(ui, inner, theme, line, lines.greatest_par());
     if !rename_field(ui, inner, index, actions) {
@@ -201,7 +218,7 @@ fn paint_frame(ui: &Ui, card: Rect, theme: &Theme, response: &Response, selected
 
 /// Par against the greatest par of the pack: whole if proved, hollow if it may still fall, none if there is no route.
 fn par_bar(ui: &Ui, inner: Rect, theme: &Theme, line: &Line, greatest: u32) {
-    let top = inner.top() + 51.0;
+    let top = inner.bottom() - 43.0;
     let rail = Rect::from_min_size(pos2(inner.left(), top), vec2(inner.width(), 5.0));
     ui.painter()
         .rect_filled(rail, 2.5, theme.line.gamma_multiply(0.35));
@@ -227,7 +244,7 @@ fn caption(ui: &Ui, inner: Rect, theme: &Theme, index: usize, name: &str, select
     job.wrap = egui::text::TextWrapping::truncate_at_width(inner.width());
     let galley = ui.painter().layout_job(job);
     ui.painter()
-        .galley(pos2(inner.left(), inner.top() + 60.0), galley, colour);
+        .galley(pos2(inner.left(), inner.bottom() - 34.0), galley, colour);
 }
 
 fn foot(ui: &Ui, inner: Rect, theme: &Theme, line: &Line) {
@@ -365,7 +382,7 @@ fn rename_field(ui: &mut Ui, inner: Rect, index: usize, actions: &mut Vec<Action
         return false;
     };
     let place = Rect::from_min_size(
-        pos2(inner.left() - 3.0, inner.top() + 56.0),
+        pos2(inner.left() - 3.0, inner.bottom() - 38.0),
         vec2(inner.width() + 6.0, 22.0),
     );
     let field = TextEdit::singleline(&mut renaming.text)

@@ -93,7 +93,7 @@ impl Theme {
 
     /// A hairline between areas; it separates and means nothing, so it may be faint.
     pub fn hairline(&self) -> Stroke {
-        Stroke::new(1.0, self.line.gamma_multiply(0.45))
+        Stroke::new(1.0, self.panel.lerp_to_gamma(self.line, 0.4))
     }
 
     /// An outline that can be relied on to be seen.
@@ -161,7 +161,7 @@ impl Theme {
             panel_fill: self.panel,
             popup_shadow: self.shadow(),
             window_shadow: self.shadow(),
-            slider_trailing_fill: true,
+            slider_trailing_fill: false,
             handle_shape: HandleShape::Circle,
             disabled_alpha: 0.55,
             ..base

@@ -1,6 +1,6 @@
 //! Small pictures of whole levels for the shelf, made once for each state of a level.
 //!
-//! Cells of six pixels and more show the pictures of their kinds, smaller ones their colours. A frame makes at most
+//! Cells of four pixels and more show the pictures of their kinds, smaller ones their colours. A frame makes at most
 //! [`MOST_A_FRAME`]; levels that wait for theirs are grey meanwhile. Those that were not seen for a while are given back.
 
 use super::pictures::{Kind, Pictures};
@@ -16,7 +16,7 @@ const MOST_A_FRAME: usize = 4;
 /// Most thumbnails that are kept; past these, the ones not seen in the last frame go.
 const MOST_KEPT: usize = 240;
 /// Cells of at least this many pixels show pictures instead of colours.
-const LEAST_PICTURE: u32 = 6;
+const LEAST_PICTURE: u32 = 4;
 
 struct Thumbnail {
     /// Held so that its address, which is the key, is not given to another level.

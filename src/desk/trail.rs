@@ -151,6 +151,7 @@ fn speed(ui: &mut Ui, state: &State, actions: &mut Vec<Action>) {
             .color(theme.muted),
     );
     ui.spacing_mut().slider_width = 80.0;
+    ui.visuals_mut().widgets.inactive.bg_fill = theme.line;
     let slider = egui::Slider::new(&mut speed, 1.0..=30.0)
         .logarithmic(true)
         .show_value(false);
