@@ -84,6 +84,11 @@ pub struct Pictures {
 }
 
 impl Pictures {
+    /// No pictures yet.
+    pub fn new() -> Pictures {
+        Pictures::default()
+    }
+
     /// Once a frame, before anything is painted: notes which kinds there are and in which folder their picture files lie.
     pub fn begin_frame(
         &mut self,
