@@ -1,12 +1,15 @@
-//! The sample packs: written as the program writes them, drawn with its pictures, and holding what is promised of them.
+//! The sample packs: written as the program writes them, drawn with its pictures, and each level's verdict the one that its pack
+//! intends, as `foldwright check` on the built binary gives it.
 //!
 //! Packs called `unsolvable-*` hold levels that can't be finished, each for the reason in its notes; all other levels can.
 
 use foldwright::file::{builtin, read_pack, write_pack};
 use foldwright::level::{Control, Look, Pack};
+use serde_json::Value;
 use std::collections::BTreeMap;
 use std::fs;
 use std::path::{Path, PathBuf};
+use std::process::{Command, Stdio};
 
 fn folder() -> PathBuf {
     Path::new(env!("CARGO_MANIFEST_DIR")).join("sample-levels")
@@ -108,5 +111,75 @@ fn the_packs_hold_what_is_promised_of_them() {
                 level.par
             );
         }
+    }
+}
+
+/// What `foldwright check sample-levels` prints with these options, and its exit status.
+fn check(options: &[&str]) -> (Value, Option<i32>) {
+    let output = Command::new(env!("CARGO_BIN_EXE_foldwright"))
+        .arg("check")
+        .arg(folder())
+        .args(["--json", "--limit", "60"])
+        .args(options)
+        .stdin(Stdio::null())
+        .output()
+        .expect("the program runs");
+    let report = serde_json::from_slice(&output.stdout)
+        .unwrap_or_else(|error| panic!("{error}: {}", String::from_utf8_lossy(&output.stderr)));
+    (report, output.status.code())
+}
+
+/// What a level is called in a report of [`check`], and the level's part of it.
+fn levels(report: &Value) -> Vec<(String, String, Value)> {
+    let mut all = Vec::new();
+    for pack in report["packs"].as_array().expect("packs") {
+        assert_eq!(pack["error"], Value::Null, "{pack}");
+        let file = pack["file"].as_str().expect("a file");
+        let file = file.rsplit(['/', '\\']).next().expect("a name").to_owned();
+        for level in pack["levels"].as_array().expect("levels") {
+            let name = level["name"].as_str().expect("a name").to_owned();
+            all.push((file.clone(), name, level.clone()));
+        }
+    }
+    all
+}
+
+#[test]
+fn every_level_has_the_verdict_that_its_pack_intends_and_the_recorded_par() {
+    let packs = samples();
+    let (report, status) = check(&[]);
+    assert_eq!(status, Some(1), "some levels are unsolvable on purpose");
+    let answered = levels(&report);
+    assert_eq!(
+        answered.len(),
+        packs
+            .iter()
+            .map(|(_, _, pack)| pack.levels.len())
+            .sum::<usize>()
+    );
+    let mut next = BTreeMap::new();
+    for (file, name, answer) in answered {
+        let at = next.entry(file.clone()).or_insert(0);
+        let (_, _, pack) = packs
+            .iter()
+            .find(|(other, _, _)| *other == file)
+            .expect("a sample pack");
+        let level = &pack.levels[*at];
+        *at += 1;
+        let where_ = format!("{file}, {name}");
+        assert_eq!(name, level.name, "{where_}");
+        if meant_unsolvable(&file) {
+            assert_eq!(answer["verdict"], "unsolvable", "{where_}: {answer}");
+            continue;
+        }
+        assert_eq!(answer["verdict"], "solvable", "{where_}: {answer}");
+        assert_eq!(answer["steps"]["proved"], true, "{where_}: {answer}");
+        let par = level.par.and_then(|par| par.steps);
+        assert_eq!(
+            answer["steps"]["fewest"].as_u64(),
+            par.map(u64::from),
+            "{where_}"
+        );
+        assert_eq!(answer["message"], Value::Null, "{where_}");
     }
 }
