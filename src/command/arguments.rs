@@ -1,6 +1,6 @@
 //! The words of the command line.
 
-use crate::study::Prove;
+use crate::study::{Halt, Limits, Prove};
 use clap::{Args, Parser, Subcommand, ValueEnum};
 use std::num::NonZeroUsize;
 use std::path::PathBuf;
@@ -19,6 +19,7 @@ Examples:
   foldwright check levels/                    a table of every pack in a folder
   foldwright check levels/ --json --jobs 2    the same for machines
   foldwright check a.pack.ron --level 3 --prove both --map --tiles
+  foldwright export film a.pack.ron --level 3 --out route.gif
 
 RUST_LOG=debug shows the log on standard error.";
 
@@ -56,6 +57,129 @@ pub(super) enum Task {
     /// Check packs without a window: verdict, par and route of every level
     #[command(after_help = CHECK_AFTER)]
     Check(CheckArguments),
+    /// Write pictures, films of routes and tables
+    #[command(subcommand)]
+    Export(ExportTask),
+}
+
+#[derive(Debug, Subcommand)]
+pub(super) enum ExportTask {
+    /// Draw one level as PNG or SVG
+    Picture(PictureArguments),
+    /// Draw every level of a pack into a folder
+    Shelf(ShelfArguments),
+    /// Show a cheapest route, or the intended one, as an endless GIF
+    Film(FilmArguments),
+    /// Check packs and write their levels as a table (CSV)
+    Table(TableArguments),
+}
+
+#[derive(Debug, Args)]
+pub(super) struct PictureArguments {
+    /// The pack file
+    pub pack: PathBuf,
+    /// Which level, by its name or its number from 1
+    #[arg(long, value_name = "NAME-OR-NUMBER")]
+    pub level: String,
+    /// The picture file, ending in .png or .svg
+    #[arg(long, short, value_name = "FILE")]
+    pub out: PathBuf,
+    /// Side of a cell in a PNG, in pixels
+    #[arg(long, value_name = "PIXELS", default_value_t = 48, value_parser = clap::value_parser!(u32).range(1..=256))]
+    pub cell: u32,
+}
+
+#[derive(Debug, Args)]
+pub(super) struct ShelfArguments {
+    /// The pack file
+    pub pack: PathBuf,
+    /// The folder for the pictures; it is made where there is none
+    #[arg(long, short, value_name = "FOLDER")]
+    pub out: PathBuf,
+    /// Write SVG and not PNG
+    #[arg(long)]
+    pub svg: bool,
+    /// Side of a cell in a PNG, in pixels
+    #[arg(long, value_name = "PIXELS", default_value_t = 16, value_parser = clap::value_parser!(u32).range(1..=256))]
+    pub cell: u32,
+}
+
+#[derive(Debug, Args)]
+pub(super) struct FilmArguments {
+    /// The pack file
+    pub pack: PathBuf,
+    /// Which level, by its name or its number from 1
+    #[arg(long, value_name = "NAME-OR-NUMBER")]
+    pub level: String,
+    /// The film, a GIF
+    #[arg(long, short, value_name = "FILE")]
+    pub out: PathBuf,
+    /// Show the intended route of the level, and not one of fewest steps
+    #[arg(long)]
+    pub intended: bool,
+    /// Side of a cell, in pixels
+    #[arg(long, value_name = "PIXELS", default_value_t = 32, value_parser = clap::value_parser!(u32).range(1..=256))]
+    pub cell: u32,
+    /// Milliseconds that each step is shown
+    #[arg(long, value_name = "MS", default_value_t = 250, value_parser = clap::value_parser!(u32).range(20..=10_000))]
+    pub ms: u32,
+    #[command(flatten)]
+    pub search: SearchArguments,
+}
+
+#[derive(Debug, Args)]
+pub(super) struct TableArguments {
+    /// Pack files, and folders that are searched for *.pack.ron
+    #[arg(required = true, value_name = "PATH")]
+    pub paths: Vec<PathBuf>,
+    /// The table; standard output without it
+    #[arg(long, short, value_name = "FILE")]
+    pub out: Option<PathBuf>,
+    #[command(flatten)]
+    pub search: SearchArguments,
+}
+
+/// What a search may spend, and what it is to prove.
+#[derive(Clone, Debug, Args)]
+pub(super) struct SearchArguments {
+    /// Seconds that each question about a level may take
+    #[arg(long, value_name = "SECONDS", default_value = "10", value_parser = seconds)]
+    pub limit: Duration,
+    /// Memory that the search of one level may hold, in MiB; each of --jobs may hold as much
+    #[arg(long, value_name = "MIB", default_value_t = 2048, value_parser = clap::value_parser!(u64).range(1..=1 << 24))]
+    pub memory: u64,
+    /// Which measure to prove; the route is a cheapest by it (by steps for both and none)
+    #[arg(long, value_name = "MEASURE", default_value = "steps")]
+    pub prove: Measure,
+    /// Levels that are searched at the same time
+    #[arg(long, value_name = "N", default_value = "1")]
+    pub jobs: NonZeroUsize,
+    /// No progress, no warnings, and in the table only levels that are not well
+    #[arg(long, short)]
+    pub quiet: bool,
+}
+
+impl Default for SearchArguments {
+    fn default() -> SearchArguments {
+        SearchArguments {
+            limit: Duration::from_secs(10),
+            memory: 2048,
+            prove: Measure::Steps,
+            jobs: NonZeroUsize::MIN,
+            quiet: false,
+        }
+    }
+}
+
+impl SearchArguments {
+    pub(super) fn limits(&self) -> Limits {
+        Limits {
+            time: Some(self.limit),
+            bytes: self.memory << 20,
+            positions: None,
+            halt: Halt::never(),
+        }
+    }
 }
 
 #[derive(Debug, Args)]
@@ -69,27 +193,14 @@ pub(super) struct CheckArguments {
     /// Check this level alone, by its name or its number from 1
     #[arg(long, value_name = "NAME-OR-NUMBER")]
     pub level: Option<String>,
-    /// Seconds that each question about a level may take
-    #[arg(long, value_name = "SECONDS", default_value = "10", value_parser = seconds)]
-    pub limit: Duration,
-    /// Memory that the search of one level may hold, in MiB; each of --jobs may hold as much
-    #[arg(long, value_name = "MIB", default_value_t = 2048, value_parser = clap::value_parser!(u64).range(1..=1 << 24))]
-    pub memory: u64,
-    /// Which measure to prove; the route is a cheapest by it (by steps for both and none)
-    #[arg(long, value_name = "MEASURE", default_value = "steps")]
-    pub prove: Measure,
-    /// Levels that are searched at the same time
-    #[arg(long, value_name = "N", default_value = "1")]
-    pub jobs: NonZeroUsize,
     /// Count the whole fold map as well: folds, commitments, traps
     #[arg(long)]
     pub map: bool,
     /// Tell for every tile as well whether it is needed
     #[arg(long)]
     pub tiles: bool,
-    /// No progress, no warnings, and in the table only levels that are not well
-    #[arg(long, short)]
-    pub quiet: bool,
+    #[command(flatten)]
+    pub search: SearchArguments,
 }
 
 #[derive(Clone, Copy, Debug, PartialEq, Eq, ValueEnum)]

@@ -5,9 +5,9 @@ use super::arguments::CheckArguments;
 use super::gather::{Found, gather, keep_level};
 use super::{print, report, table};
 use crate::level::{Control, Level};
-use crate::study::{Halt, Limits};
 use crate::worker::in_parallel;
 use std::io::{IsTerminal, Write, stderr};
+use std::num::NonZeroUsize;
 use std::sync::Arc;
 
 /// A pack after its check.
@@ -35,20 +35,16 @@ pub(super) fn check(arguments: &CheckArguments) -> u8 {
 }
 
 pub(super) fn check_found(found: Vec<Found>, arguments: &CheckArguments) -> u8 {
+    let quiet = arguments.search.quiet;
     warn_unreadable(&found);
     let questions = Questions {
-        prove: arguments.prove.into(),
-        limits: Limits {
-            time: Some(arguments.limit),
-            bytes: arguments.memory << 20,
-            positions: None,
-            halt: Halt::never(),
-        },
+        prove: arguments.search.prove.into(),
+        limits: arguments.search.limits(),
         map: arguments.map,
         tiles: arguments.tiles,
     };
-    let packs = answer_all(found, &questions, arguments);
-    if !arguments.quiet {
+    let packs = answer_all(found, &questions, arguments.search.jobs, quiet);
+    if !quiet {
         warn_advice(&packs);
     }
     let text = if arguments.json {
@@ -60,22 +56,23 @@ pub(super) fn check_found(found: Vec<Found>, arguments: &CheckArguments) -> u8 {
             }
         }
     } else {
-        table::table(&packs, arguments.quiet)
+        table::table(&packs, quiet)
     };
     print(&text);
     status(&packs)
 }
 
-fn answer_all(
+pub(super) fn answer_all(
     found: Vec<Found>,
     questions: &Questions,
-    arguments: &CheckArguments,
+    threads: NonZeroUsize,
+    quiet: bool,
 ) -> Vec<CheckedPack> {
     let jobs: Vec<_> = found.iter().flat_map(|pack| &pack.levels).collect();
-    let show_progress = !arguments.quiet && stderr().is_terminal();
+    let show_progress = !quiet && stderr().is_terminal();
     let mut done = 0;
     let results = in_parallel(
-        arguments.jobs,
+        threads,
         jobs.len(),
         |at| answer(&jobs[at].1, &jobs[at].2, questions),
         |at| {
@@ -138,7 +135,7 @@ fn warn_advice(packs: &[CheckedPack]) {
 }
 
 /// 2 before 1 before 3 before 0.
-fn status(packs: &[CheckedPack]) -> u8 {
+pub(super) fn status(packs: &[CheckedPack]) -> u8 {
     let of_levels = packs
         .iter()
         .flat_map(|pack| &pack.levels)

@@ -3,19 +3,19 @@
 mod answer;
 mod arguments;
 mod check;
+mod export;
 mod gather;
+mod pictures;
 mod report;
 mod table;
 mod watched;
 
-use arguments::{Arguments, CheckArguments, Measure, Task};
+use arguments::{Arguments, CheckArguments, SearchArguments, Task};
 use clap::Parser;
 use std::ffi::OsString;
 use std::io::{Write, stdout};
-use std::num::NonZeroUsize;
 use std::path::PathBuf;
 use std::process::ExitCode;
-use std::time::Duration;
 
 /// The packages that a window needs on a bare system, for the line that is printed when it can't be opened.
 const WINDOW_PACKAGES: &str =
@@ -46,6 +46,7 @@ pub fn run(words: impl IntoIterator<Item = OsString>) -> Next {
         None => Next::Desk(None),
         Some(Task::Open { file }) => Next::Desk(Some(file)),
         Some(Task::Check(arguments)) => Next::End(ExitCode::from(check::check(&arguments))),
+        Some(Task::Export(task)) => Next::End(ExitCode::from(export::export(&task))),
     }
 }
 
@@ -58,13 +59,9 @@ pub fn without_desk(reason: &str, path: Option<PathBuf>) -> ExitCode {
         paths: path.into_iter().collect(),
         json: false,
         level: None,
-        limit: Duration::from_secs(10),
-        memory: 2048,
-        prove: Measure::Steps,
-        jobs: NonZeroUsize::MIN,
         map: false,
         tiles: false,
-        quiet: false,
+        search: SearchArguments::default(),
     };
     if !arguments.paths.is_empty() {
         return ExitCode::from(check::check(&arguments));

@@ -13,8 +13,9 @@ const MOST_NAME: usize = 32;
 pub(super) fn table(packs: &[CheckedPack], quiet: bool) -> String {
     let mut out = String::new();
     for pack in packs {
-        if let Some(error) = &pack.error {
-            let _ = writeln!(out, "{error}\n");
+        if pack.error.is_some() {
+            // The reason stands on standard error.
+            let _ = writeln!(out, "{}  can't be read\n", pack.file);
             continue;
         }
         let rows: Vec<&(usize, std::sync::Arc<Level>, Answer)> = pack

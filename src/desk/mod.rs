@@ -23,7 +23,7 @@ mod menu;
 pub mod overlay;
 pub mod pictures;
 pub mod playback;
-pub mod shapes;
+
 pub mod shelf;
 mod shelf_lines;
 mod sources;

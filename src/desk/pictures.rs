@@ -1,7 +1,7 @@
 //! Pictures of kinds as textures, crisp at every zoom.
 //!
 //! A kind is drawn from the first of these that there is: the picture of its `look`, the built-in picture of its id, the
-//! shape of its `look`, a shape made from its traits ([`super::shapes`]). Picture files are read beside the window; until
+//! shape of its `look`, a shape made from its traits ([`crate::export::shapes`]). Picture files are read beside the window; until
 //! they are there, and where one can't be read, the kind shows what it would show without. All of them end as a small square image for each
 //! size in use. Sizes are rounded up to a bucket, so that zooming makes a few images and not one a frame; a frame spends
 //! only [`FRAME_BUDGET`] on making them, shows the nearest size that it has meanwhile, and asks to be drawn again. The

@@ -1,7 +1,7 @@
 //! What the images of a kind are made from: its own picture, the built-in one of its id, or a shape.
 
 use super::pictures::Kind;
-use super::shapes;
+use crate::export::shapes;
 use crate::file::{Artwork, builtin};
 use crate::level::{BodyIx, Dir, GroundIx, ItemIx, KindId, Look, Mechanics, Picture};
 use egui::{Color32, ColorImage};

@@ -189,14 +189,14 @@ pub fn save_pack(path: &Path, pack: &Pack, preamble: &str) -> Result<Fingerprint
     save_atomic(path, &text)
 }
 
-/// Puts `text` into the file at `path` in one go: after a crash at any moment the file has its old content or the new one.
+/// Puts `content` into the file at `path` in one go: after a crash at any moment the file has its old content or the new one.
 ///
-/// The text goes into a temporary file in the same folder, is brought to the disk and then takes the file's place, with
+/// It goes into a temporary file in the same folder, is brought to the disk and then takes the file's place, with
 /// the permissions of the old file. A symbolic link stays one; the file that it leads to is saved.
 ///
 /// # Errors
 /// If the folder or the file can't be written, or the disk is full. The file then is untouched.
-pub fn save_atomic(path: &Path, text: &str) -> Result<Fingerprint, SaveError> {
+pub fn save_atomic(path: &Path, content: impl AsRef<[u8]>) -> Result<Fingerprint, SaveError> {
     let target = follow_links(path);
     let old = fs::metadata(&target).ok();
     if let Some(old) = &old {
@@ -207,13 +207,13 @@ pub fn save_atomic(path: &Path, text: &str) -> Result<Fingerprint, SaveError> {
             return Err(SaveError::ReadOnlyFile(target));
         }
     }
-    let written = replace(&target, text, old.map(|old| old.permissions()));
+    let written = replace(&target, content.as_ref(), old.map(|old| old.permissions()));
     written.map_err(|error| SaveError::of(error, &target))
 }
 
 fn replace(
     target: &Path,
-    text: &str,
+    content: &[u8],
     permissions: Option<fs::Permissions>,
 ) -> io::Result<Fingerprint> {
     let folder = folder_of(target);
@@ -224,7 +224,7 @@ fn replace(
     #[cfg(unix)]
     builder.permissions(everyone); // What the user's mask leaves of it, as for any new file.
     let mut temporary = builder.tempfile_in(&folder)?;
-    temporary.write_all(text.as_bytes())?;
+    temporary.write_all(content)?;
     if let Some(permissions) = permissions {
         temporary.as_file().set_permissions(permissions)?;
     }
@@ -234,7 +234,7 @@ fn replace(
         // Brings the new name to the disk; some file systems refuse this for folders, and have no need of it.
         let _ = folder.sync_all();
     }
-    Ok(Fingerprint::of(text.as_bytes(), &file.metadata()?))
+    Ok(Fingerprint::of(content, &file.metadata()?))
 }
 
 fn folder_of(path: &Path) -> PathBuf {
