@@ -25,7 +25,7 @@ const PACK: &str = r##"(
         bodies: {'g': "gardener", 'p': "planter"},
     ),
     levels: [
-        (name: "Corridor, \"short\"", ground: ["...o", "rbl."], bodies: ["gp--", "----"], intended: "see"),
+        (name: "Corridor, \"short\"", ground: ["...o", "rbl."], bodies: ["gp--", "----"], intended: "een"),
         (name: "Stuck", ground: ["..o"], bodies: ["p-g"]),
         (name: "Nobody", ground: ["..o"], bodies: ["p--"], intended: "e"),
     ],
