@@ -50,7 +50,7 @@ impl Budget {
     }
 }
 
-/// Memory has run out: the budget did not give what was asked for.
+/// No more room: memory has run out (the budget did not give what was asked for), or work was stopped.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
 pub struct Full;
 

@@ -60,7 +60,6 @@ struct RoamRecord {
 /// is entered) and adds the walk.
 ///
 /// **Cost.** For each roam 24 bytes, its mask (8 bytes for each 64 places), 12 bytes a key beside the registry, 16 bytes an edge.
-#[derive(Debug)]
 pub struct Folded<S> {
     /// The space itself.
     pub space: S,
@@ -80,6 +79,7 @@ pub struct Folded<S> {
     list: EdgeList,
     members: Vec<u16>,
     key_room: Vec<u64>,
+    stop: Option<Box<dyn Fn() -> bool>>,
 }
 
 impl<S: StateSpace> Folded<S> {
@@ -103,8 +103,17 @@ impl<S: StateSpace> Folded<S> {
             list: EdgeList::default(),
             members: Vec::new(),
             key_room: vec![0; words],
+            stop: None,
             space,
         }
+    }
+
+    /// The same, giving no more room ([`Full`]) once `stop` says so. It is asked before every roam is found, which on large boards is
+    /// many times while one node is opened.
+    #[must_use]
+    pub fn stopped_by(mut self, stop: impl Fn() -> bool + 'static) -> Folded<S> {
+        self.stop = Some(Box::new(stop));
+        self
     }
 
     /// Finds the roam of the start: it and the place; [`NO_ROAM`] if the start is a proved dead end.
@@ -312,6 +321,9 @@ impl<S: StateSpace> Folded<S> {
     }
 
     fn add_roam(&mut self, key: &[u64], key_id: u32, arrival: Arrival) -> Result<RoamId, Full> {
+        if self.stop.as_ref().is_some_and(|stop| stop()) {
+            return Err(Full);
+        }
         self.roams.reserve(1, &mut self.budget)?;
         self.masks.reserve(self.mask_words, &mut self.budget)?;
         let mut members = std::mem::take(&mut self.members);

@@ -85,12 +85,16 @@ pub(super) struct Closed<'a> {
 pub(super) fn close<'a>(rules: &'a Rules, limits: &Limits) -> Result<Closed<'a>, UndecidedReason> {
     let mut meter = Meter::new(limits);
     let space = LevelSpace::new(rules, Bounds::none(rules));
-    let mut graph = Folded::new(space, limits.bytes, false);
+    let halt = limits.halt.clone();
+    let mut graph = Folded::new(space, limits.bytes, false).stopped_by(move || halt.fired());
     let mut closure = Closure::new();
-    while closure
-        .advance(&mut graph)
-        .map_err(|Full| UndecidedReason::Memory)?
-    {
+    while closure.advance(&mut graph).map_err(|Full| {
+        if limits.halt.fired() {
+            UndecidedReason::Stopped
+        } else {
+            UndecidedReason::Memory
+        }
+    })? {
         meter.check(graph.positions())?;
     }
     Ok(Closed { graph })

@@ -4,7 +4,7 @@ use super::bounds::Bounds as Ahead;
 use super::meter::Meter;
 use super::moves::MoveSpace;
 use super::space::LevelSpace;
-use super::trail::{Replayed, replay, spans, steps_of};
+use super::trail::{Replayed, replay};
 use super::{
     Bounds, Figure, Limits, Outcome, Progress, Prove, Report, Stage, UndecidedReason, Watch,
 };
@@ -65,8 +65,16 @@ pub(super) fn solve(rules: &Rules, prove: Prove, limits: &Limits, watch: &mut dy
         bytes_peak: 0,
     };
     let space = LevelSpace::new(rules, Ahead::new(rules));
-    let mut graph = Folded::new(space, limits.bytes, true);
-    let stopped = run.through(&mut graph, prove).err();
+    let halt = limits.halt.clone();
+    let mut graph = Folded::new(space, limits.bytes, true).stopped_by(move || halt.fired());
+    let stopped = run
+        .through(&mut graph, prove)
+        .err()
+        .map(|reason| match reason {
+            // A graph that was stopped gives no more room, as if memory had run out.
+            UndecidedReason::Memory if limits.halt.fired() => UndecidedReason::Stopped,
+            reason => reason,
+        });
     run.proved = stopped.is_none();
     run.glimpse();
     run.report(&graph, stopped)
@@ -199,7 +207,8 @@ impl Run<'_> {
             base.budget.used(),
         );
         let space = MoveSpace::new(self.rules, Ahead::new(self.rules));
-        let mut graph = Folded::new(space, spare, true);
+        let halt = self.limits.halt.clone();
+        let mut graph = Folded::new(space, spare, true).stopped_by(move || halt.fired());
         let mut proof = engine(Aim::Pushes, &mut graph)?;
         let result = self.prove(&mut graph, &mut proof, Measure::Pushes);
         self.bytes_peak = self.bytes_peak.max(self.aside.2 + graph.budget.peak());
@@ -237,8 +246,7 @@ impl Run<'_> {
 
     /// A route was found: it counts only when it replays.
     fn arrive(&mut self, trail: &[u32]) {
-        let route = steps_of(self.rules, trail).map(|steps| self.rules.route(&steps));
-        let Some(replayed) = route.and_then(|route| replay(self.rules, route)) else {
+        let Some(replayed) = replay(self.rules, trail) else {
             debug_assert!(false, "a route that was found does not replay");
             self.at_fault = true;
             return;
@@ -311,16 +319,17 @@ impl Run<'_> {
             (None, None) if self.unsolvable && !self.at_fault => Outcome::Unsolvable,
             (None, None) => Outcome::Undecided(UndecidedReason::Stopped),
         };
-        let route = self.route.map(|replayed| replayed.route);
+        let (route, spans) = match self.route {
+            Some(replayed) => (Some(replayed.route), replayed.spans),
+            None => (None, Vec::new()),
+        };
         Report {
             outcome,
             steps: figure(self.best_steps, self.steps_low),
             pushes: figure(self.best_pushes, self.pushes_low),
             steps_low: self.steps_low,
             pushes_low: self.pushes_low,
-            spans: route
-                .as_ref()
-                .map_or(Vec::new(), |route| spans(self.rules, route)),
+            spans,
             route,
             positions: graph.positions() + self.aside.0,
             folds: graph.roam_count() as u64 + self.aside.1,

@@ -2,113 +2,103 @@
 
 use super::space::unlabel;
 use crate::level::{Control, Route};
-use crate::rules::{Roam, Rules, Step};
+use crate::rules::{Roam, Rules, Scratch, Step};
+
+/// The steps of a trail, and the lengths of its spans.
+pub(super) struct Walked {
+    pub steps: Vec<Step>,
+    pub spans: Vec<u32>,
+}
 
 /// The steps of a trail: from each position on the walk to the place that the next label names, then its step.
 /// None if the trail does not fit the level, which would be a fault of the search.
-pub(super) fn steps_of(rules: &Rules, trail: &[u32]) -> Option<Vec<Step>> {
+///
+/// With a lone walker a walk and the step after it are a span: what leaves a roam ends one. Otherwise a step ends a span unless
+/// a single step takes it back.
+pub(super) fn walk(rules: &Rules, trail: &[u32]) -> Option<Walked> {
     let mut scratch = rules.scratch();
     let mut roam = Roam::default();
     let mut here = rules.start().0.to_vec();
     let mut next = here.clone();
-    let mut steps = Vec::new();
+    let (mut steps, mut spans) = (Vec::new(), Vec::new());
+    let mut span = 0;
     for &label in trail {
         let (place, step) = unlabel(label);
         if rules.lone_walker().is_some() {
-            rules.roam(&mut scratch, &here, &mut roam);
+            rules.roam_members(&mut scratch, &here, &mut roam);
             let cell = *rules.tables().places.get(usize::from(place))?;
             let member = roam.member_at(cell)?;
-            steps.extend(
-                roam.walk_to(member)
-                    .into_iter()
-                    .map(|dir| Step { slot: 0, dir }),
-            );
+            let walk = roam.walk_to(member);
+            span += walk.len() as u32;
+            steps.extend(walk.into_iter().map(|dir| Step { slot: 0, dir }));
             rules.member_position(&here, &roam.members[member], &mut next);
             here.copy_from_slice(&next);
         }
-        rules.step_into(&mut scratch, &here, step, &mut next)?;
-        here.copy_from_slice(&next);
+        let info = rules.step_into(&mut scratch, &here, step, &mut next)?;
         steps.push(step);
+        span += 1;
+        let folds = rules.lone_walker().is_none()
+            && !info.finished
+            && taken_back(rules, &mut scratch, &here, &next);
+        if !folds {
+            spans.push(std::mem::take(&mut span));
+        }
+        here.copy_from_slice(&next);
     }
-    Some(steps)
+    spans.extend(Some(span).filter(|&span| span > 0));
+    Some(Walked { steps, spans })
+}
+
+/// Whether one step leads from `there` back to `here`.
+fn taken_back(rules: &Rules, scratch: &mut Scratch, here: &[u64], there: &[u64]) -> bool {
+    let mut candidates = Vec::new();
+    let mut back = vec![0; here.len()];
+    rules.candidate_steps_into(scratch, there, &mut candidates);
+    candidates.iter().any(|&step| {
+        let made = rules.step_into(scratch, there, step, &mut back);
+        made.is_some() && back == here
+    })
 }
 
 /// A route that was replayed by the step engine and found to finish the level.
 #[derive(Clone, Debug)]
 pub(super) struct Replayed {
     pub route: Route,
+    pub spans: Vec<u32>,
     pub steps: u32,
     /// Moves under Drag.
     pub pushes: u32,
 }
 
-/// Plays a route from the start. None unless every step of it changes something and the last position, and no earlier one, is finished.
-pub(super) fn replay(rules: &Rules, route: Route) -> Option<Replayed> {
-    let played = rules.play(&route);
-    let finished = played.iter().map(|step| rules.finished(&step.position));
-    let first = match rules.finished(&rules.start()) {
-        true => 0,
-        false => finished.into_iter().position(|done| done)? + 1,
-    };
-    if played.len() != route.len() || first != route.len() {
-        return None;
-    }
-    let pushes = match &route {
-        Route::Steer(_) => played.iter().filter(|step| step.pushed).count(),
-        Route::Drag(steps) => {
-            let changes = steps
-                .windows(2)
-                .filter(|pair| pair[0].block != pair[1].block);
-            usize::from(!steps.is_empty()) + changes.count()
-        }
-    };
-    Some(Replayed {
-        steps: route.len() as u32,
-        pushes: pushes as u32,
-        route,
-    })
-}
-
-/// Lengths of the spans of a route, which end with each step that is not taken back at once.
-///
-/// With a lone walker these are the roams of the route; otherwise a step that a single step takes back ends no span.
-pub(super) fn spans(rules: &Rules, route: &Route) -> Vec<u32> {
+/// Plays a trail from the start, step by step, without any folding. None unless every step of it changes something and the
+/// last position, and no earlier one, is finished.
+pub(super) fn replay(rules: &Rules, trail: &[u32]) -> Option<Replayed> {
+    let Walked { steps, spans } = walk(rules, trail)?;
     let mut scratch = rules.scratch();
-    let mut roam = Roam::default();
-    let mut back = vec![0; rules.words()];
-    let mut candidates = Vec::new();
-    let mut before = rules.start();
-    let mut spans = Vec::new();
-    let mut length = 0;
-    let lone = rules.control() == Control::Steer && rules.lone_walker().is_some();
-    for played in rules.play(route) {
-        length += 1;
-        let after = &played.position;
-        let folds = if rules.finished(after) {
-            false
-        } else if lone {
-            rules.roam(&mut scratch, &before.0, &mut roam);
-            let mut key = after.0.to_vec();
-            let place = rules.split(&mut key);
-            let mut old = before.0.to_vec();
-            rules.split(&mut old);
-            let cell = rules.tables().places[usize::from(place)];
-            key == old && roam.member_at(cell).is_some()
-        } else {
-            rules.candidate_steps_into(&mut scratch, &after.0, &mut candidates);
-            candidates.iter().any(|&step| {
-                let made = rules.step_into(&mut scratch, &after.0, step, &mut back);
-                made.is_some() && back[..] == before.0[..]
-            })
-        };
-        if !folds {
-            spans.push(length);
-            length = 0;
+    let mut here = rules.start().0.to_vec();
+    let mut next = here.clone();
+    let mut finished = rules.finished_in(&mut scratch, &here);
+    let (mut pushes, mut last) = (0, None);
+    for &step in &steps {
+        if finished {
+            return None;
         }
-        before = played.position;
+        let info = rules.step_into(&mut scratch, &here, step, &mut next)?;
+        finished = info.finished;
+        pushes += match rules.control() {
+            Control::Steer => u32::from(info.pushed),
+            Control::Drag => u32::from(last != Some(step.slot)),
+        };
+        last = Some(info.slot);
+        std::mem::swap(&mut here, &mut next);
     }
-    if length > 0 {
-        spans.push(length);
-    }
-    spans
+    // The same once more from the packed position, not from what the step told.
+    let ends_well = finished && rules.finished_in(&mut scratch, &here);
+    let route = rules.route(&steps);
+    (ends_well && route.len() == steps.len()).then_some(Replayed {
+        steps: steps.len() as u32,
+        route,
+        spans,
+        pushes,
+    })
 }
