@@ -113,7 +113,7 @@ fn random_level(seed: u64, odd: bool) -> (Mechanics, Level) {
     if let Some(at) = draw(&mut rng) {
         level.bodies[at] = Some(BodyIx(0));
     }
-    let cargo = rng.random_range(1..=3);
+    let cargo = rng.random_range(if odd { 0..=3 } else { 1..=3 });
     let homes = if odd { rng.random_range(1..=3) } else { cargo };
     for _ in 0..cargo {
         if let Some(at) = draw(&mut rng) {

@@ -9,9 +9,10 @@ use super::board::Board;
 use super::heat::Heat;
 use super::matching::{Demand, Matching};
 use super::meter::Meter;
+use super::prover::Prover;
 use super::pushes::{Order, PushSearch, Slice};
 use super::route::{steps_of, walked};
-use super::steps::StepSearch;
+
 use crate::level::{Dir, Route};
 use crate::rules::{Rules, Step};
 use crate::study::{
@@ -217,7 +218,7 @@ impl<const N: usize> Study<'_, N> {
             .best
             .is_none()
             .then(|| PushSearch::new(self.board, demand, Order::AnyRoute, &mut self.meter));
-        let mut waves = StepSearch::new(self.board, demand);
+        let mut waves = Prover::new(self.board, demand);
         let mut size = FIRST_SLICE;
         loop {
             if let Some(search) = &mut any {
@@ -233,11 +234,11 @@ impl<const N: usize> Study<'_, N> {
                 }
             }
             if let Some(best) = &self.best {
-                waves.ceiling = waves.ceiling.min(best.steps.len() as u32);
+                waves.lower_ceiling(best.steps.len() as u32);
             }
             self.meter.bytes_aside = any.as_ref().map_or(0, PushSearch::bytes);
             let slice = waves.advance(&mut self.meter, size * 4);
-            self.steps_low = self.steps_low.max(waves.low);
+            self.steps_low = self.steps_low.max(waves.low());
             if !matches!(slice, Ok(Slice::More)) {
                 if let Some(any) = &any {
                     self.retire_pushes(any);
@@ -251,7 +252,7 @@ impl<const N: usize> Study<'_, N> {
 
     fn settle_waves(
         &mut self,
-        waves: &StepSearch<'_, N>,
+        waves: &Prover<'_, N>,
         ended: Result<Slice, UndecidedReason>,
     ) -> Result<(), Stop> {
         self.retire_waves(waves);
@@ -263,7 +264,7 @@ impl<const N: usize> Study<'_, N> {
                 Ok(())
             }
             Ok(_) if self.best.is_some() => Ok(()),
-            Ok(_) => Err(Stop::Unsolvable { cut: waves.cut }),
+            Ok(_) => Err(Stop::Unsolvable { cut: waves.cut() }),
             Err(reason) => {
                 if let Some(steps) = waves.route() {
                     self.accept(steps);
@@ -316,12 +317,11 @@ impl<const N: usize> Study<'_, N> {
         }
     }
 
-    fn retire_waves(&mut self, waves: &StepSearch<'_, N>) {
+    fn retire_waves(&mut self, waves: &Prover<'_, N>) {
         self.meter.note_bytes(waves.bytes());
         self.folds += waves.nodes() as u64;
-        for (all, cells) in waves.looked_at() {
-            self.heat.add(all, cells);
-        }
+        let heat = &mut self.heat;
+        waves.looked_at(|all, cells| heat.add(all, cells));
     }
 
     /// Tells the watcher how far it has come, if the last glimpse was a while ago.

@@ -2,6 +2,7 @@
 
 use super::bits::Bits;
 use super::distance::Distances;
+use super::meet::Moved;
 use crate::level::{Cell, Dir, Size};
 
 /// Bodies in groups whose members are interchangeable.
@@ -42,8 +43,12 @@ pub(super) struct Board<const N: usize> {
     pub walk: Bits<N>,
     /// Where cargo may be pushed to.
     pub hold: Bits<N>,
+    /// Where cargo may stand: that, and where it stands at the start.
+    pub stands: Bits<N>,
     pub exits: Bits<N>,
     pub homes: Bits<N>,
+    /// By cell: those around it, clockwise from the north; itself in place of those outside the box.
+    near: Vec<[u16; 8]>,
     /// Cells that are not in the first, and not in the last column.
     not_first: Bits<N>,
     not_last: Bits<N>,
@@ -108,6 +113,7 @@ impl<const N: usize> Board<N> {
             homes: plan.kinds.iter().map(|kind| set(&kind.homes)).collect(),
             named: plan.kinds.iter().map(|kind| kind.named).collect(),
         };
+        let kinds = if kinds.groups() == 0 { nobody() } else { kinds };
         let mut board = Board {
             size: plan.size,
             corner: plan.corner,
@@ -115,6 +121,8 @@ impl<const N: usize> Board<N> {
             height: plan.height,
             walk: set(&plan.walk),
             hold: set(&plan.hold),
+            stands: kinds.start.iter().fold(set(&plan.hold), |all, &start| all | start),
+            near: Vec::new(),
             exits: set(&plan.exits),
             homes: set(&plan.homes),
             not_first: column(0),
@@ -131,6 +139,7 @@ impl<const N: usize> Board<N> {
             bound_home: Vec::new(),
             lost_pairs: Vec::new(),
         };
+        board.near = (0..board.area()).map(|at| board.around(at)).collect();
         board.distances = Distances::new(&board);
         board.settle_losses();
         board
@@ -257,6 +266,64 @@ impl<const N: usize> Board<N> {
         }
     }
 
+    /// The roam after cargo moved and the walker came to where it is, given the cells of the roam before. Only for cargo that is
+    /// not done.
+    ///
+    /// If the cells beside the one that was taken are still linked around it, the old roam stays in one piece and is a seed that
+    /// the flood has little to add to.
+    #[inline]
+    pub fn roam_after(&self, all: Bits<N>, before: Bits<N>, moved: &Moved) -> Bits<N> {
+        let free = self.walk & !all;
+        let seed = Bits::one(moved.walker);
+        if self.linked_around(free, moved.taken) {
+            self.flood(free, seed | before)
+        } else {
+            self.flood(free, seed)
+        }
+    }
+
+    /// Whether the cells of `free` beside a cell that is not of it are linked through the eight around it.
+    #[inline]
+    pub fn linked_around(&self, free: Bits<N>, at: usize) -> bool {
+        let near = &self.near[at];
+        let open = |around: usize| u32::from(free.has(usize::from(near[around & 7])));
+        let (n, e, s, w) = (open(0), open(2), open(4), open(6));
+        let links =
+            (n & open(1) & e) + (e & open(3) & s) + (s & open(5) & w) + (w & open(7) & n);
+        n + e + s + w <= links + 1
+    }
+
+    fn around(&self, at: usize) -> [u16; 8] {
+        let beside = |at: Option<usize>, dir: Dir| at.and_then(|at| self.neighbour(at, dir));
+        let corner = |dir: Dir, turn: Dir| beside(beside(Some(at), dir), turn);
+        let [n, e, s, w] = Dir::ALL.map(|dir| self.neighbour(at, dir));
+        let around = [
+            n,
+            corner(Dir::N, Dir::E),
+            e,
+            corner(Dir::E, Dir::S),
+            s,
+            corner(Dir::S, Dir::W),
+            w,
+            corner(Dir::W, Dir::N),
+        ];
+        around.map(|cell| cell.unwrap_or(at) as u16)
+    }
+
+    /// The cargo of every finished position, by group, if it is the same in all and where the walker is does not matter.
+    pub fn only_goal(&self) -> Option<Vec<Bits<N>>> {
+        let mut taken = Bits::NONE;
+        for (group, &homes) in self.groups.homes.iter().enumerate() {
+            let full = homes.count() == self.groups.start[group].count();
+            if !self.bound_home[group] || !full || (taken & homes).any() {
+                return None;
+            }
+            taken |= homes;
+        }
+        let whole = !self.homes_filled || taken == self.homes;
+        (whole && !self.never && !self.walkers_out).then(|| self.groups.homes.clone())
+    }
+
     /// Exits that a walker in `reach` can step on, with the cargo done.
     pub fn ways_out(&self, all: Bits<N>, reach: Bits<N>) -> Bits<N> {
         if self.walkers_out {
@@ -280,6 +347,15 @@ impl<const N: usize> Board<N> {
 pub(super) struct Roam<const N: usize> {
     pub cells: Bits<N>,
     pub finished: bool,
+}
+
+/// One group without a body, for levels without cargo: a set of cargo then still has a key.
+fn nobody<const N: usize>() -> Cargo<N> {
+    Cargo {
+        start: vec![Bits::NONE],
+        homes: vec![Bits::NONE],
+        named: vec![false],
+    }
 }
 
 /// Puts kinds that are wanted alike into one group. Their positions then count as one, and any route for one is a route

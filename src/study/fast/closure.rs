@@ -5,7 +5,8 @@
 //! one vector. An edge holds its target and the walker's cell after the step: the roam and the cell are the position.
 
 use super::bits::Bits;
-use super::board::Board;
+use super::board::{Board, Roam};
+use super::meet::Moved;
 use super::meter::Meter;
 use super::store::{Store, hash_set, held, reserve};
 use crate::level::Dir;
@@ -64,7 +65,7 @@ pub(super) fn close<const N: usize>(
     let most = 4 * board.kinds.start.iter().map(Bits::count).sum::<u32>() as usize
         + 4 * board.exits.count() as usize;
     closure.make_room(most.max(1), meter)?;
-    closure.meet(board, &cargo, board.walker, meter);
+    closure.meet(board, &cargo, board.walker, None, meter);
     let mut node = 0;
     while (node as usize) < closure.store.nodes() {
         meter.spend(N as u32, || closure.bytes())?;
@@ -96,7 +97,12 @@ impl<const N: usize> Closure<N> {
                 let to = board.next(from, dir);
                 let group = cargo.iter().position(|set| set.has(from)).unwrap_or(0);
                 cargo[group] = cargo[group].without(from).with(to);
-                let target = self.meet(board, cargo, from, meter);
+                let moved = Moved {
+                    taken: to,
+                    walker: from,
+                    dir,
+                };
+                let target = self.meet(board, cargo, from, Some((reach, moved)), meter);
                 cargo[group] = cargo[group].without(to).with(from);
                 self.edges.add(target, from);
             }
@@ -105,7 +111,7 @@ impl<const N: usize> Closure<N> {
             let exits = board.exits & !all;
             for dir in Dir::ALL {
                 for exit in (board.shift(reach, dir) & exits).ones() {
-                    let target = self.meet(board, cargo, exit, meter);
+                    let target = self.meet(board, cargo, exit, None, meter);
                     self.edges.add(target, exit);
                 }
             }
@@ -114,7 +120,14 @@ impl<const N: usize> Closure<N> {
 
     /// The node of a position, added if it is new.
     #[inline]
-    fn meet(&mut self, board: &Board<N>, cargo: &[Bits<N>], at: usize, meter: &mut Meter) -> u32 {
+    fn meet(
+        &mut self,
+        board: &Board<N>,
+        cargo: &[Bits<N>],
+        at: usize,
+        moved: Option<(Bits<N>, Moved)>,
+        meter: &mut Meter,
+    ) -> u32 {
         let hash = hash_set(cargo);
         let set = match self.store.find_set(cargo, hash) {
             Some(set) => {
@@ -126,7 +139,14 @@ impl<const N: usize> Closure<N> {
             None => self.store.add_set(cargo, hash),
         };
         let done = board.cargo_done(&board.kinds, cargo);
-        let roam = board.roam(Board::all(cargo), done, at);
+        let all = Board::all(cargo);
+        let roam = match moved {
+            Some((before, moved)) if !done => Roam {
+                cells: board.roam_after(all, before, &moved),
+                finished: false,
+            },
+            _ => board.roam(all, done, at),
+        };
         meter.positions += u64::from(roam.cells.count());
         self.finished.push(roam.finished);
         self.store.add_node(set, roam.cells)

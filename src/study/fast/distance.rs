@@ -85,7 +85,7 @@ impl<const N: usize> Distances<N> {
         }
         let open = |cell: u16| cell != NOWHERE && board.walk.has(usize::from(cell));
         let beside = |dir: Dir| open(next[dir.index()]);
-        if linked_around(board, at) {
+        if board.linked_around(board.walk.without(at), at) {
             for dir in Dir::ALL {
                 if beside(dir) {
                     self.side_beside[at][dir.index()] = 0;
@@ -194,30 +194,41 @@ impl<const N: usize> Distances<N> {
     }
 }
 
+impl<const N: usize> Distances<N> {
+    /// Push distances from one cell, with the walker on one side of it, to every cell and side.
+    pub fn from_start(&self, board: &Board<N>, at: usize, side: usize) -> Vec<u16> {
+        let mut far = vec![NEVER; board.area() * 4];
+        far[at * 4 + side] = 0;
+        let mut queue = vec![at * 4 + side];
+        let mut head = 0;
+        while head < queue.len() {
+            let state = queue[head];
+            head += 1;
+            let (at, side) = (state / 4, (state % 4) as u8);
+            if !board.walk.has(at) {
+                continue;
+            }
+            for dir in Dir::ALL {
+                let behind = dir.opposite().index();
+                let Some(to) = board.neighbour(at, dir) else {
+                    continue;
+                };
+                if self.side_beside[at][behind] != side || !board.hold.has(to) {
+                    continue;
+                }
+                let next = to * 4 + usize::from(self.side_beside[to][behind]);
+                if far[next] == NEVER {
+                    far[next] = far[state] + 1;
+                    queue.push(next);
+                }
+            }
+        }
+        far
+    }
+}
+
 fn neighbours<const N: usize>(board: &Board<N>) -> Vec<[u16; 4]> {
     (0..board.area())
         .map(|at| Dir::ALL.map(|dir| board.neighbour(at, dir).map_or(NOWHERE, |next| next as u16)))
         .collect()
-}
-
-/// Whether the walkable neighbours of a cell are linked through the eight cells around it. Then taking the cell away
-/// splits nothing, and no flood is needed to know it.
-fn linked_around<const N: usize>(board: &Board<N>, at: usize) -> bool {
-    let open = |cell: Option<usize>| cell.is_some_and(|cell| board.walk.has(cell));
-    let mut neighbours = 0;
-    let mut links = 0;
-    for (dir, turn) in [
-        (Dir::N, Dir::E),
-        (Dir::E, Dir::S),
-        (Dir::S, Dir::W),
-        (Dir::W, Dir::N),
-    ] {
-        let straight = board.neighbour(at, dir);
-        if open(straight) {
-            neighbours += 1;
-            let corner = straight.and_then(|cell| board.neighbour(cell, turn));
-            links += usize::from(open(board.neighbour(at, turn)) && open(corner));
-        }
-    }
-    neighbours <= links + 1
 }

@@ -117,11 +117,20 @@ impl Matching {
         groups: &[Bits<N>],
         walker: usize,
     ) -> Option<u32> {
+        self.fill(board, demand, groups, walker);
+        if self.side == 0 { Some(0) } else { self.run() }
+    }
+
+    /// Writes the matrix of a position.
+    fn fill<const N: usize>(
+        &mut self,
+        board: &Board<N>,
+        demand: &Demand,
+        groups: &[Bits<N>],
+        walker: usize,
+    ) {
         let side = demand.side;
         self.side = side;
-        if side == 0 {
-            return Some(0);
-        }
         self.cost.resize(side * side, 0);
         let mut row = 0;
         for (group, set) in groups.iter().enumerate() {
@@ -136,11 +145,9 @@ impl Matching {
             }
         }
         self.cost[row * side..].fill(0);
-        self.run()
     }
 
-    /// Like [`Matching::solve`], for a bound alone: small matrices are settled without potentials, so that
-    /// [`Matching::with_row`] must not follow.
+    /// Like [`Matching::solve`], for the bound alone: [`Matching::with_row`] must not follow.
     #[inline]
     pub fn bound<const N: usize>(
         &mut self,
@@ -149,7 +156,20 @@ impl Matching {
         groups: &[Bits<N>],
         walker: usize,
     ) -> Option<u32> {
-        self.solve(board, demand, groups, walker)
+        self.fill(board, demand, groups, walker);
+        self.least()
+    }
+
+    /// The cost of the cheapest matching. Four rows, the most common number, need no potentials.
+    fn least(&mut self) -> Option<u32> {
+        match self.side {
+            0 => Some(0),
+            4 => {
+                let total = least_of_four(&self.cost);
+                (total < CLOSED).then_some(total as u32)
+            }
+            _ => self.run(),
+        }
     }
 
     fn run(&mut self) -> Option<u32> {
@@ -213,6 +233,72 @@ impl Matching {
             .sum();
         self.cost[row * side..][..side].copy_from_slice(&old[..side]);
         (total < CLOSED).then_some(total as u32)
+    }
+}
+
+/// The cheapest matching of a matrix of four: the first two rows take two columns, the others the rest.
+fn least_of_four(cost: &[i32]) -> i32 {
+    let Some(cost) = cost.first_chunk::<16>() else {
+        return CLOSED;
+    };
+    let pair = |row: usize, left: usize, right: usize| {
+        let (a, b) = (row * 4, row * 4 + 4);
+        (cost[a + left] + cost[b + right]).min(cost[a + right] + cost[b + left])
+    };
+    [(0, 1, 2, 3), (0, 2, 1, 3), (0, 3, 1, 2), (1, 2, 0, 3), (1, 3, 0, 2), (2, 3, 0, 1)]
+        .into_iter()
+        .map(|(i, j, k, l)| pair(0, i, j) + pair(2, k, l))
+        .fold(i32::MAX, i32::min)
+}
+
+/// Push distances from where cargo started: what a position costs at least from the start.
+#[derive(Clone, Debug)]
+pub(super) struct Origins {
+    /// Group and distances to every cell and side, for each body of the start.
+    starts: Vec<(usize, Vec<u16>)>,
+}
+
+impl Origins {
+    pub fn new<const N: usize>(board: &Board<N>) -> Origins {
+        let groups = board.groups.start.iter().enumerate();
+        let starts = groups.flat_map(|(group, set)| {
+            set.ones().map(move |at| {
+                let side = board.distances.side(at, board.walker);
+                (group, board.distances.from_start(board, at, side))
+            })
+        });
+        Origins {
+            starts: starts.collect(),
+        }
+    }
+
+    /// Pushes from the start to a position at least, or `None` if none suffice. The cargo of each start cell must be somewhere, so
+    /// this is a matching of start cells to cells, by push distance.
+    pub fn bound<const N: usize>(
+        &self,
+        board: &Board<N>,
+        matching: &mut Matching,
+        groups: &[Bits<N>],
+        walker: usize,
+    ) -> Option<u32> {
+        let side = self.starts.len();
+        matching.side = side;
+        matching.cost.resize(side * side, 0);
+        let mut row = 0;
+        for (group, set) in groups.iter().enumerate() {
+            for at in set.ones() {
+                let state = at * 4 + board.distances.side(at, walker);
+                for (column, (from, far)) in self.starts.iter().enumerate() {
+                    matching.cost[row * side + column] = match far[state] {
+                        _ if *from != group => CLOSED,
+                        NEVER => CLOSED,
+                        far => i32::from(far),
+                    };
+                }
+                row += 1;
+            }
+        }
+        matching.least()
     }
 }
 

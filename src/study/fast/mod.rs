@@ -8,7 +8,8 @@
 //! * `board`, `bits`: the level as sets of cells.
 //! * `distance`, `matching`, `losses`: bounds and cuts, each with the reason why it is safe.
 //! * `store`, `open`, `meter`: what was seen, what is next, what may be spent.
-//! * `pushes`: first route, fewest pushes and exhaustion over folded positions; `steps`: fewest steps in waves.
+//! * `pushes`: first route, fewest pushes and exhaustion over folded positions; `steps`: fewest steps in waves;
+//!   `meet`: the same from both ends; `prover`: which of the two.
 //! * `closure`, `folds`: the whole map. `answer`: which search runs when.
 
 mod answer;
@@ -21,8 +22,10 @@ mod folds;
 mod heat;
 mod losses;
 mod matching;
+mod meet;
 mod meter;
 mod open;
+mod prover;
 mod pushes;
 mod route;
 mod steps;
@@ -107,6 +110,15 @@ impl FastLevel {
         on_board!(self, board => answer::solve(board, None, prove, limits, watch))
     }
 
+    /// For each cell, row by row: whether a body comes onto it or stands there, exactly. `seen` are cells that are known to be
+    /// touched; if they are all that could be, nothing is searched, else the whole space is.
+    ///
+    /// # Errors
+    /// The limit that was met first.
+    pub fn touched(&self, seen: &[bool], limits: &Limits) -> Result<Vec<bool>, UndecidedReason> {
+        on_board!(self, board => touched(board, seen, limits))
+    }
+
     /// The whole fold map, counted exactly, or `None` if positions differ here by more than bodies, which this lane leaves
     /// out (items that bear on no verdict).
     ///
@@ -115,6 +127,37 @@ impl FastLevel {
     pub fn closure(&self, limits: &Limits) -> Option<Result<Closed, UndecidedReason>> {
         on_board!(self, board => board.countable.then(|| close(board, limits)))
     }
+}
+
+/// Cells that bodies can come onto at most: those of every walk without cargo, and those that each cargo can be pushed to
+/// without the others.
+fn touched_at_most<const N: usize>(board: &Board<N>) -> bits::Bits<N> {
+    let mut most = board.walk;
+    for at in Board::all(&board.groups.start).ones() {
+        let side = board.distances.side(at, board.walker);
+        let far = board.distances.from_start(board, at, side);
+        let came = |cell: &usize| {
+            let sides = &far[cell * 4..cell * 4 + 4];
+            sides.iter().any(|&far| far != distance::NEVER)
+        };
+        most |= (0..board.area()).filter(came).collect();
+    }
+    most
+}
+
+/// See [`FastLevel::touched`].
+fn touched<const N: usize>(
+    board: &Board<N>,
+    seen: &[bool],
+    limits: &Limits,
+) -> Result<Vec<bool>, UndecidedReason> {
+    let most = touched_at_most(board);
+    if most.ones().all(|at| seen[board.level_index(at)]) {
+        let mut touched = vec![false; board.size.area()];
+        most.ones().for_each(|at| touched[board.level_index(at)] = true);
+        return Ok(touched);
+    }
+    close(board, limits).map(|closed| closed.touched)
 }
 
 fn close<const N: usize>(board: &Board<N>, limits: &Limits) -> Result<Closed, UndecidedReason> {

@@ -5,8 +5,9 @@
 //! consistent, so A* opens nothing twice and the first finished node that it takes has the fewest pushes.
 
 use super::bits::Bits;
-use super::board::Board;
+use super::board::{Board, Roam};
 use super::matching::{Demand, Matching};
+use super::meet::Moved;
 use super::meter::Meter;
 use super::open::Buckets;
 use super::store::{NONE, Store, hash_set, held, reserve};
@@ -18,7 +19,7 @@ use crate::study::UndecidedReason;
 pub(super) enum Order {
     /// The least pushes so far plus bound: the first finish has the fewest pushes.
     Fewest,
-    /// The least bound, now and then the least of pushes plus twice the bound: a finish soon.
+    /// The least of pushes plus three times the bound, now and then the least bound: a finish soon.
     AnyRoute,
 }
 
@@ -107,7 +108,7 @@ impl<'b, const N: usize> PushSearch<'b, N> {
                     closed: false,
                     finished: false,
                 };
-                search.add(set, start, meter);
+                search.add(set, start, None, meter);
             }
             None => search.cut = true,
         }
@@ -233,7 +234,12 @@ impl<'b, const N: usize> PushSearch<'b, N> {
             closed: false,
             finished: false,
         };
-        self.add(set, node, meter);
+        let moved = Moved {
+            taken: push.to,
+            walker: push.from,
+            dir: push.dir,
+        };
+        self.add(set, node, Some((push.node, moved)), meter);
     }
 
     /// The bound after a push. Only the row of the pushed cargo has changed (`distance`), and the bound of a child is at least
@@ -266,11 +272,23 @@ impl<'b, const N: usize> PushSearch<'b, N> {
         self.enqueue(known);
     }
 
-    fn add(&mut self, set: u32, mut node: Node, meter: &mut Meter) {
+    fn add(
+        &mut self,
+        set: u32,
+        mut node: Node,
+        moved: Option<(u32, Moved)>,
+        meter: &mut Meter,
+    ) {
         let cargo = self.store.set(set);
         let all = Board::all(cargo);
         let done = self.board.cargo_done(&self.board.groups, cargo);
-        let roam = self.board.roam(all, done, usize::from(node.at));
+        let roam = match moved {
+            Some((before, moved)) if !done => Roam {
+                cells: self.board.roam_after(all, self.store.cells(before), &moved),
+                finished: false,
+            },
+            _ => self.board.roam(all, done, usize::from(node.at)),
+        };
         node.finished = roam.finished || (done && self.board.ways_out(all, roam.cells).any());
         let id = self.store.add_node(set, roam.cells);
         meter.positions += u64::from(roam.cells.count());
@@ -290,8 +308,8 @@ impl<'b, const N: usize> PushSearch<'b, N> {
         match self.order {
             Order::Fewest => self.open.push(node.pushes + node.bound, id),
             Order::AnyRoute => {
-                self.open.push(node.bound, id);
-                self.second.push(node.pushes + 2 * node.bound, id);
+                self.open.push(node.pushes + 3 * node.bound, id);
+                self.second.push(node.bound, id);
             }
         }
     }

@@ -16,6 +16,7 @@
 use super::bits::Bits;
 use super::board::Board;
 use super::matching::{Demand, Matching};
+use super::meet::Moved;
 use super::meter::Meter;
 use super::open::Buckets;
 use super::pushes::Slice;
@@ -102,7 +103,7 @@ impl<'b, const N: usize> StepSearch<'b, N> {
         };
         let hash = hash_set(&search.cargo);
         let set = search.store.add_set(&search.cargo, hash);
-        match search.meet(set, board.walker) {
+        match search.meet(set, board.walker, None) {
             Some(node) => search.arrive(node, NONE, 0, board.walker, Dir::N),
             None => search.cut = true,
         }
@@ -279,7 +280,12 @@ impl<'b, const N: usize> StepSearch<'b, N> {
                     None
                 } else {
                     let set = set.unwrap_or_else(|| self.store.add_set(&self.cargo, hash));
-                    self.meet(set, from)
+                    let moved = Moved {
+                        taken: to,
+                        walker: from,
+                        dir,
+                    };
+                    self.meet(set, from, Some((parent, moved)))
                 }
             }
         };
@@ -294,12 +300,18 @@ impl<'b, const N: usize> StepSearch<'b, N> {
     }
 
     /// Adds the roam of a walker at `at`, or `None` if it cannot be finished from.
-    fn meet(&mut self, set: u32, at: usize) -> Option<u32> {
+    fn meet(&mut self, set: u32, at: usize, moved: Option<(u32, Moved)>) -> Option<u32> {
         let cargo = self.store.set(set);
         let bound = self.matching.bound(self.board, self.demand, cargo, at)?;
         let done = self.board.cargo_done(&self.board.groups, cargo);
-        let roam = self.board.roam(Board::all(cargo), done, at);
-        let node = self.store.add_node(set, roam.cells);
+        let all = Board::all(cargo);
+        let cells = match moved {
+            Some((before, moved)) if !done => {
+                self.board.roam_after(all, self.store.cells(before), &moved)
+            }
+            _ => self.board.roam(all, done, at).cells,
+        };
+        let node = self.store.add_node(set, cells);
         self.waves.push(Wave {
             seen: Bits::NONE,
             front: Bits::NONE,
