@@ -97,7 +97,10 @@ fn shut(level: &Level, rules: &Rules) -> Option<Rules> {
     let Some(Route::Steer(steps)) = report.route else {
         return None;
     };
-    let walker = level.bodies.iter().position(|body| body.is_some_and(|kind| kind.0 == 0))?;
+    let walker = level
+        .bodies
+        .iter()
+        .position(|body| body.is_some_and(|kind| kind.0 == 0))?;
     let mut cell = level.size.cell(walker);
     for dir in steps {
         cell = level.size.neighbour(cell, dir)?;
@@ -148,11 +151,18 @@ fn small(mechanics: &Mechanics, shape: Shape, count: usize) {
     let mut roams: Vec<u64> = Vec::new();
     table_row("whole map", 2, count, |at| {
         let fast = FastLevel::compile(rules(at)).expect("push-only");
-        let closed = fast.closure(&limits(60.0)).expect("countable").expect("in time");
+        let closed = fast
+            .closure(&limits(60.0))
+            .expect("countable")
+            .expect("in time");
         roams.push(closed.roams);
     });
     roams.sort_unstable();
-    println!("roams in the map: median {}, most {}", roams[roams.len() / 2], roams[roams.len() - 1]);
+    println!(
+        "roams in the map: median {}, most {}",
+        roams[roams.len() / 2],
+        roams[roams.len() - 1]
+    );
 }
 
 fn larger(mechanics: &Mechanics, shape: Shape, count: usize, asked: &[(Prove, &str, f64)]) {

@@ -33,7 +33,10 @@ use crate::rules::Rules;
 /// The route of the answer was replayed by the step engine. "Unsolvable" means that the space, cut only by safe rules, was
 /// closed. The same limits in positions give the same answer, to the node, on every run.
 pub fn solve(rules: &Rules, prove: Prove, limits: &Limits, watch: &mut dyn Watch) -> Report {
-    solve_general(rules, prove, limits, watch)
+    match fast::FastLevel::compile(rules) {
+        Some(fast) => fast.solve(rules, prove, limits, watch),
+        None => solve_general(rules, prove, limits, watch),
+    }
 }
 
 /// The answer of the general lane, which takes every level; [`solve`] chooses the lane.
@@ -60,7 +63,11 @@ pub fn fold_map(rules: &Rules, limits: &Limits) -> Result<FoldMap, UndecidedReas
 /// # Errors
 /// The limit that was met first.
 pub fn map_counts(rules: &Rules, limits: &Limits) -> Result<MapCounts, UndecidedReason> {
-    fold_map(rules, limits).map(|map| map.counts())
+    let fast = fast::FastLevel::compile(rules).and_then(|fast| fast.closure(limits));
+    match fast {
+        Some(closed) => closed.map(|closed| closed.counts),
+        None => fold_map(rules, limits).map(|map| map.counts()),
+    }
 }
 
 /// The class of every cell, row by row, exact; `None` where a limit was met first, and for cells that the classes leave out.

@@ -94,18 +94,16 @@ impl<const N: usize> Study<'_, N> {
         if board.cargo_done(&board.groups, &board.groups.start)
             && (!board.walkers_out || board.exits.has(board.walker))
         {
-            self.meter.positions += 1;
-            self.folds += 1;
-            let all = Board::all(&board.groups.start);
-            self.heat.add(all, super::bits::Bits::one(board.walker));
+            self.note_start();
             self.closed = true;
             self.accept(Vec::new());
             return Ok(());
         }
-        let demand = Demand::of(board).ok_or(Stop::Unsolvable { cut: true })?;
-        self.pushes_low = Matching::default()
-            .solve(board, &demand, &board.groups.start, board.walker)
-            .ok_or(Stop::Unsolvable { cut: true })?;
+        let Some((demand, least)) = self.least_at_start() else {
+            self.note_start();
+            return Err(Stop::Unsolvable { cut: true });
+        };
+        self.pushes_low = least;
         self.steps_low = self.pushes_low.max(1);
         match self.prove {
             Prove::None => self.any_route(&demand),
@@ -116,6 +114,26 @@ impl<const N: usize> Study<'_, N> {
                 self.fewest_steps(&demand)
             }
         }
+    }
+
+    /// What has to be matched and the pushes needed at least; none if no number suffices.
+    fn least_at_start(&self) -> Option<(Demand, u32)> {
+        let board = self.board;
+        let demand = Demand::of(board)?;
+        let start = &board.groups.start;
+        let least = Matching::default().solve(board, &demand, start, board.walker)?;
+        Some((demand, least))
+    }
+
+    /// Counts the roam of the start, where that is all that is looked at.
+    fn note_start(&mut self) {
+        let board = self.board;
+        let all = Board::all(&board.groups.start);
+        let done = board.cargo_done(&board.groups, &board.groups.start);
+        let roam = board.roam(all, done, board.walker);
+        self.meter.positions += u64::from(roam.cells.count());
+        self.folds += 1;
+        self.heat.add(all, roam.cells);
     }
 
     fn any_route(&mut self, demand: &Demand) -> Result<(), Stop> {
@@ -376,7 +394,7 @@ impl<const N: usize> Study<'_, N> {
                 self.steps_low.min(high)
             };
         }
-        let report = Report {
+        Report {
             outcome,
             steps: high.map(|fewest| Figure {
                 fewest,
@@ -401,8 +419,7 @@ impl<const N: usize> Study<'_, N> {
             heat: self.heat.counts(self.board),
             touched: self.heat.touched(self.board),
             closed: self.closed,
-        };
-        report
+        }
     }
 }
 

@@ -121,7 +121,10 @@ impl<const N: usize> Board<N> {
             height: plan.height,
             walk: set(&plan.walk),
             hold: set(&plan.hold),
-            stands: kinds.start.iter().fold(set(&plan.hold), |all, &start| all | start),
+            stands: kinds
+                .start
+                .iter()
+                .fold(set(&plan.hold), |all, &start| all | start),
             near: Vec::new(),
             exits: set(&plan.exits),
             homes: set(&plan.homes),
@@ -288,8 +291,7 @@ impl<const N: usize> Board<N> {
         let near = &self.near[at];
         let open = |around: usize| u32::from(free.has(usize::from(near[around & 7])));
         let (n, e, s, w) = (open(0), open(2), open(4), open(6));
-        let links =
-            (n & open(1) & e) + (e & open(3) & s) + (s & open(5) & w) + (w & open(7) & n);
+        let links = (n & open(1) & e) + (e & open(3) & s) + (s & open(5) & w) + (w & open(7) & n);
         n + e + s + w <= links + 1
     }
 

@@ -245,10 +245,17 @@ fn least_of_four(cost: &[i32]) -> i32 {
         let (a, b) = (row * 4, row * 4 + 4);
         (cost[a + left] + cost[b + right]).min(cost[a + right] + cost[b + left])
     };
-    [(0, 1, 2, 3), (0, 2, 1, 3), (0, 3, 1, 2), (1, 2, 0, 3), (1, 3, 0, 2), (2, 3, 0, 1)]
-        .into_iter()
-        .map(|(i, j, k, l)| pair(0, i, j) + pair(2, k, l))
-        .fold(i32::MAX, i32::min)
+    [
+        (0, 1, 2, 3),
+        (0, 2, 1, 3),
+        (0, 3, 1, 2),
+        (1, 2, 0, 3),
+        (1, 3, 0, 2),
+        (2, 3, 0, 1),
+    ]
+    .into_iter()
+    .map(|(i, j, k, l)| pair(0, i, j) + pair(2, k, l))
+    .fold(i32::MAX, i32::min)
 }
 
 /// Push distances from where cargo started: what a position costs at least from the start.

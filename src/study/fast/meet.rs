@@ -127,7 +127,10 @@ impl<'b, const N: usize> MeetSearch<'b, N> {
             Some(set) => set,
             None => self.store.add_set(groups, hash),
         };
-        let known = cells.ones().next().and_then(|at| self.store.find_node(set, at));
+        let known = cells
+            .ones()
+            .next()
+            .and_then(|at| self.store.find_node(set, at));
         let node = known.unwrap_or_else(|| self.add(set, cells));
         let at = front.ones().next().unwrap_or(0);
         let half = &mut self.halves[side as usize][node as usize];
@@ -263,7 +266,9 @@ impl<'b, const N: usize> MeetSearch<'b, N> {
         let cargo = self.store.cargo(node);
         let bound = match self.side {
             Side::Forward => self.matching.bound(self.board, self.demand, cargo, at),
-            Side::Back => self.origins.bound(self.board, &mut self.matching, cargo, at),
+            Side::Back => self
+                .origins
+                .bound(self.board, &mut self.matching, cargo, at),
         };
         let bound = bound.unwrap_or(HOPELESS);
         self.halves[self.side as usize][node as usize].bound = bound;
@@ -286,7 +291,15 @@ impl<'b, const N: usize> MeetSearch<'b, N> {
                     continue;
                 }
                 self.cargo[group] = self.cargo[group].without(from).with(to);
-                self.enter(node, Moved { taken: to, walker: from, dir }, time);
+                self.enter(
+                    node,
+                    Moved {
+                        taken: to,
+                        walker: from,
+                        dir,
+                    },
+                    time,
+                );
                 self.cargo[group] = self.cargo[group].without(to).with(from);
             }
         }
@@ -306,7 +319,15 @@ impl<'b, const N: usize> MeetSearch<'b, N> {
                 let walker = self.board.next(from, dir.opposite());
                 let group = self.cargo.iter().position(|set| set.has(to)).unwrap_or(0);
                 self.cargo[group] = self.cargo[group].without(to).with(from);
-                self.enter(node, Moved { taken: from, walker, dir }, time);
+                self.enter(
+                    node,
+                    Moved {
+                        taken: from,
+                        walker,
+                        dir,
+                    },
+                    time,
+                );
                 self.cargo[group] = self.cargo[group].without(from).with(to);
             }
         }
@@ -376,7 +397,10 @@ impl<'b, const N: usize> MeetSearch<'b, N> {
     pub fn bytes(&self) -> u64 {
         let halves = self.halves.iter().map(held).sum::<u64>();
         let arrivals = self.arrivals.iter().map(held).sum::<u64>();
-        let layers = self.layers.iter().map(|layers| held(&layers.now) + held(&layers.next));
+        let layers = self
+            .layers
+            .iter()
+            .map(|layers| held(&layers.now) + held(&layers.next));
         self.store.bytes() + halves + arrivals + layers.sum::<u64>()
     }
 

@@ -154,7 +154,8 @@ fn touched<const N: usize>(
     let most = touched_at_most(board);
     if most.ones().all(|at| seen[board.level_index(at)]) {
         let mut touched = vec![false; board.size.area()];
-        most.ones().for_each(|at| touched[board.level_index(at)] = true);
+        most.ones()
+            .for_each(|at| touched[board.level_index(at)] = true);
         return Ok(touched);
     }
     close(board, limits).map(|closed| closed.touched)

@@ -272,13 +272,7 @@ impl<'b, const N: usize> PushSearch<'b, N> {
         self.enqueue(known);
     }
 
-    fn add(
-        &mut self,
-        set: u32,
-        mut node: Node,
-        moved: Option<(u32, Moved)>,
-        meter: &mut Meter,
-    ) {
+    fn add(&mut self, set: u32, mut node: Node, moved: Option<(u32, Moved)>, meter: &mut Meter) {
         let cargo = self.store.set(set);
         let all = Board::all(cargo);
         let done = self.board.cargo_done(&self.board.groups, cargo);
