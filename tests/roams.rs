@@ -2,8 +2,7 @@
 
 mod support;
 
-use foldwright::level::Dir;
-use foldwright::rules::{Position, Roam, Rules, Scratch, Step};
+use foldwright::rules::{Member, Position, Roam, Rules, Scratch, Step};
 use rand::rngs::StdRng;
 use rand::{Rng, SeedableRng};
 use std::collections::{BTreeMap, BTreeSet};
@@ -23,11 +22,9 @@ fn edges(rules: &Rules, from: &Position) -> Vec<(Step, Position)> {
 /// Everything but where the walker stands.
 fn rest(rules: &Rules, position: &Position) -> Position {
     let mut words = position.clone();
-    let anywhere = foldwright::rules::Member {
+    let anywhere = Member {
         cell: rules.places()[0],
         distance: 0,
-        parent: 0,
-        dir: Dir::N,
     };
     rules.member_position(&position.0, &anywhere, &mut words.0);
     words

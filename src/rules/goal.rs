@@ -59,7 +59,7 @@ impl Rules {
         }
     }
 
-    fn holds(&self, s: &Scratch, wanted: &Condition) -> bool {
+    pub(super) fn holds(&self, s: &Scratch, wanted: &Condition) -> bool {
         let tables = &self.tables;
         match wanted {
             Condition::HomesFilled => tables.homes.iter().all(|&cell| {

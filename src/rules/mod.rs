@@ -23,6 +23,7 @@ mod peek;
 mod replay;
 mod roam;
 mod state;
+mod survey;
 pub(crate) mod tables;
 #[cfg(test)]
 mod tests;
@@ -37,6 +38,7 @@ use crate::level::{
     BodyIx, Cell, Control, Dir, GroundIx, ItemIx, Level, Mechanics, Problem, Severity,
 };
 use packing::Layout;
+use survey::Terrain;
 use tables::{NONE, Tables};
 
 /// A level compiled to tables. Immutable, `Send + Sync`, cheap to share behind an `Arc`.
@@ -46,11 +48,8 @@ pub struct Rules {
     layout: Layout,
     /// None: nothing is ever finished.
     goal: Option<Vec<Condition>>,
-    /// What the survey of a walk notes of each kind of ground, and of each cell at the start (see `walks.rs`).
-    ground_notes: Vec<u8>,
-    start_notes: Vec<u8>,
-    /// Neighbours, with one index past the last cell for all that is off the board.
-    walk_next: Vec<[u16; 4]>,
+    /// What surveys of the board have in common.
+    terrain: Terrain,
 }
 
 /// A position in packed, canonical form: equal positions (rules.md, Position) have equal words.
@@ -143,19 +142,10 @@ impl Rules {
     }
 
     fn assemble(tables: Tables, goal: Option<Vec<Condition>>) -> Rules {
-        let minds_walker = walks::goal_minds_walker(&tables, goal.as_deref());
-        let ground_notes = walks::ground_notes(&tables, minds_walker);
-        let starts = tables.start_ground.iter();
-        let mut start_notes: Vec<u8> = starts
-            .map(|&ground| ground_notes[usize::from(ground)])
-            .collect();
-        start_notes.push(0);
         Rules {
             layout: Layout::new(&tables),
+            terrain: Terrain::new(&tables, goal.as_deref()),
             goal,
-            ground_notes,
-            start_notes,
-            walk_next: walk_next(&tables.next),
             tables,
         }
     }
@@ -176,7 +166,7 @@ impl Rules {
                 *twin = NONE;
             }
         }
-        rules.walk_next = walk_next(&rules.tables.next);
+        rules.terrain.close(closed, &rules.tables.next);
         rules
     }
 
@@ -301,14 +291,4 @@ fn refuse_invalid(mut problems: Vec<Problem>) -> Result<(), Vec<Problem>> {
     } else {
         Err(problems)
     }
-}
-
-fn walk_next(next: &[[u16; 4]]) -> Vec<[u16; 4]> {
-    let off_board = next.len() as u16;
-    let mut nexts: Vec<[u16; 4]> = next
-        .iter()
-        .map(|dirs| dirs.map(|cell| if cell == NONE { off_board } else { cell }))
-        .collect();
-    nexts.push([off_board; 4]);
-    nexts
 }

@@ -2,7 +2,7 @@
 
 use super::packing::Field;
 use super::{Rules, Scratch, Step};
-use crate::level::{Cell, Control, Dir};
+use crate::level::{Cell, Control, Dir, Size};
 
 /// One position of a roam.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -12,9 +12,13 @@ pub struct Member {
     pub cell: u16,
     /// Fewest steps of the roam from the entry.
     pub distance: u16,
-    /// Index of the member before it on a shortest walk from the entry; its own for the entry.
-    pub parent: u16,
-    /// Direction of the last step of that walk; of no meaning for the entry.
+}
+
+/// A cell reached by a step of the roam that is no plain walk over open ground.
+#[derive(Clone, Copy, Debug)]
+pub(super) struct Arrival {
+    pub cell: u16,
+    pub from: u16,
     pub dir: Dir,
 }
 
@@ -43,56 +47,74 @@ pub struct Roam {
     pub members: Vec<Member>,
     /// The steps that may lead out.
     pub departures: Vec<Departure>,
-    /// For each cell: the member on it, plus one.
-    at_cell: Vec<u16>,
+    /// How members were reached that a plain walk did not reach first.
+    pub(super) arrivals: Vec<Arrival>,
+    /// Open ground, by row.
+    open: Vec<u64>,
+    size: Option<Size>,
 }
 
 impl Roam {
     /// The cell of a member that isn't told by where a walker stands.
     pub const NOWHERE: u16 = u16::MAX;
 
-    /// The directions of a shortest walk from the entry to a member.
+    /// The directions of a shortest walk from the entry to a member. Takes time in the order of the members.
     pub fn walk_to(&self, member: usize) -> Vec<Dir> {
         let mut dirs = Vec::new();
-        let mut at = member;
-        while self.members[at].distance > 0 {
-            dirs.push(self.members[at].dir);
-            at = usize::from(self.members[at].parent);
+        let Some(size) = self.size.filter(|_| self.members[member].distance > 0) else {
+            return dirs;
+        };
+        let mut distance = vec![u16::MAX; size.area()];
+        for member in &self.members {
+            distance[usize::from(member.cell)] = member.distance;
+        }
+        let mut at = self.members[member].cell;
+        while let Some((from, dir)) = self.step_before(size, &distance, at) {
+            dirs.push(dir);
+            at = from;
         }
         dirs.reverse();
         dirs
     }
 
-    /// The member that stands on a cell, if any.
+    /// The member that stands on a cell, if any. Takes time in the order of the members.
     pub fn member_at(&self, cell: u16) -> Option<usize> {
-        let at = self.at_cell.get(usize::from(cell)).copied().unwrap_or(0);
-        usize::from(at).checked_sub(1)
+        let mut members = self.members.iter();
+        members.position(|member| member.cell == cell && cell != Roam::NOWHERE)
     }
 
-    fn begin(&mut self, area: usize) {
-        for member in &self.members {
-            if let Some(at) = self.at_cell.get_mut(usize::from(member.cell)) {
-                *at = 0;
-            }
+    /// The last step of a shortest walk to a cell, and where it comes from.
+    fn step_before(&self, size: Size, distance: &[u16], at: u16) -> Option<(u16, Dir)> {
+        let before = distance[usize::from(at)].checked_sub(1)?;
+        if let Some(arrival) = self.arrivals.iter().find(|arrival| arrival.cell == at) {
+            return Some((arrival.from, arrival.dir));
         }
-        self.at_cell.resize(area, 0);
+        let here = size.cell(usize::from(at));
+        Dir::ALL.into_iter().find_map(|dir| {
+            let from = size.neighbour(here, dir.opposite())?;
+            let open = self.open[usize::from(from.y) + 1] >> from.x & 1 != 0;
+            let index = size.index(from);
+            (open && distance[index] == before).then_some((index as u16, dir))
+        })
+    }
+
+    pub(super) fn keep_open(&mut self, open: &[u64], size: Size) {
+        self.open.clear();
+        self.open.extend_from_slice(open);
+        self.size = Some(size);
+    }
+
+    fn begin(&mut self) {
         self.members.clear();
         self.departures.clear();
-    }
-
-    pub(super) fn add(&mut self, member: Member) {
-        if member.cell != Roam::NOWHERE {
-            self.at_cell[usize::from(member.cell)] = self.members.len() as u16 + 1;
-        }
-        self.members.push(member);
+        self.arrivals.clear();
+        self.size = None;
     }
 }
 
 const ENTRY: Member = Member {
     cell: Roam::NOWHERE,
     distance: 0,
-    parent: 0,
-    dir: Dir::N,
 };
 
 impl Rules {
@@ -108,13 +130,13 @@ impl Rules {
     }
 
     fn find_roam(&self, s: &mut Scratch, from: &[u64], out: &mut Roam, departures: bool) {
-        out.begin(self.tables.size.area());
+        out.begin();
         self.load(s, from);
         let finished = self.goal_holds(s);
         let walker = match self.tables.walkers[..] {
             [walker] if self.tables.control == Control::Steer => walker,
             _ => {
-                out.add(ENTRY);
+                out.members.push(ENTRY);
                 if departures && !finished {
                     self.each_candidate(s, |step| {
                         out.departures.push(Departure { member: 0, step });
@@ -124,14 +146,9 @@ impl Rules {
             }
         };
         let cell = s.at[usize::from(walker)];
-        out.add(Member { cell, ..ENTRY });
+        out.members.push(Member { cell, ..ENTRY });
         if !finished {
-            self.survey(s, walker);
-            let field = self.layout.bodies[usize::from(walker)];
-            self.spread(s, from, field, out);
-        }
-        if !departures {
-            out.departures.clear();
+            self.spread(s, from, walker, out, departures);
         }
         if out.members.len() > 1 {
             for member in &out.members {

@@ -29,8 +29,7 @@ pub struct Scratch {
     pub(super) codes: Vec<u16>,
     /// Room for positions of the roam.
     pub(super) words: [Vec<u64>; 3],
-    /// What a walk needs to know of each cell; one more entry stands for all that is off the board.
-    pub(super) notes: Vec<u8>,
+    pub(super) survey: super::survey::Survey,
     /// Cells that a body came onto in any step made so far.
     pub(super) touched: Vec<bool>,
 }
@@ -67,7 +66,7 @@ impl Rules {
             walker_order: Vec::with_capacity(tables.walkers.len()),
             codes: vec![0; tables.bodies.len()],
             words: [words.clone(), words.clone(), words],
-            notes: Vec::with_capacity(area + 1),
+            survey: super::survey::Survey::default(),
             touched: vec![false; area],
         };
         self.set_start(&mut scratch);

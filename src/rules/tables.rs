@@ -246,7 +246,7 @@ impl Tables {
             .chain(later)
     }
 
-    fn cells_with(&self, wanted: u16) -> Vec<u16> {
+    pub fn cells_with(&self, wanted: u16) -> Vec<u16> {
         let cells: BTreeSet<u16> = self
             .start_options()
             .filter(|&(_, ground)| self.grounds[usize::from(ground)].flags & wanted != 0)

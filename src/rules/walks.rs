@@ -1,249 +1,359 @@
 //! Spreading a roam over the board.
 //!
-//! Most steps of a walk are plain: from ground without surprises to a free cell of such ground, and back by the opposite step.
-//! Those are told from a survey of the board, one byte a cell, made once a roam. Whatever the survey calls odd is tried with the real step,
-//! forth and back, so that the roam is exact for every mix of traits.
+//! Most steps of a walk are plain: from open ground to open ground, and back by the opposite step. The survey of the board
+//! has open ground as one row of bits each, so a whole layer of the walk spreads at once. Steps with anything else at either end are
+//! judged one by one: where traits allow, by following the walker over the notes of the survey (it slides, it warps), else by making
+//! the real step forth and back. Either way the roam is exact, for every mix of traits.
 //!
-//! What is odd, for one walker: ground that slides, warps, changes when left or unlocked; cells with an item; plates that the walker
-//! would hold, since gates are judged from where it stands; cells where standing may finish the level; cells beside cargo that
-//! may follow. A push always changes more than where the walker stands unless a warp can bring cargo back, so cargo in the way is tried only on
-//! levels with warps. The same holds for the way back of a step that the opposite one does not undo: without a warp, a
-//! slide never comes round a corner.
+//! What need not be tried, for one walker:
+//! - Frail ground changes when it is left, a lock when it is entered, an item is gone once taken: no step onto them or from them is undone at once.
+//! - A push changes more than where the walker stands. Only a warp could bring cargo back to where it was, and if
+//!   the walker is to leave that cell free, only towed cargo could come there: pushes are tried on levels with both.
+//! - Without a warp, a slide never comes round a corner: only the opposite step can undo a step.
 
 use super::packing::Field;
-use super::tables::{NONE, Tables, flag};
-use super::{Condition, Departure, Member, Roam, Rules, Scratch, Step};
+use super::roam::Arrival;
+use super::survey::{Survey, note};
+use super::{Departure, Member, Roam, Rules, Scratch, Step};
 use crate::level::Dir;
 
-/// What the survey notes of a cell; the low four bits say in which directions the walker may enter.
-mod note {
-    pub const ENTER: u8 = 0b1111;
-    pub const ODD: u8 = 1 << 4;
-    pub const TAKEN: u8 = 1 << 5;
-    /// Taken by cargo that can be pushed.
-    pub const PUSH: u8 = 1 << 6;
-    /// Taken by cargo that may follow.
-    pub const TOW: u8 = 1 << 7;
+/// What a step from a member is to the roam.
+enum Walk {
+    /// No step.
+    Stay,
+    /// A step of the roam, to this cell.
+    Link(u16),
+    /// A step that is not, or no step.
+    Leave,
+    /// Not told by the survey.
+    Try,
 }
 
-/// Whether standing somewhere can, for a walker, decide whether the level is finished.
-pub(super) fn goal_minds_walker(tables: &Tables, goal: Option<&[Condition]>) -> bool {
-    let walks = |slot: u16| tables.bodies[usize::from(slot)].walker;
-    goal.is_some_and(|conditions| {
-        conditions.iter().any(|wanted| match wanted {
-            Condition::WalkersOut => true,
-            Condition::CargoHome(slots) => slots.iter().any(|&slot| walks(slot)),
-            Condition::HomesFilled => tables.walkers.iter().any(|&slot| {
-                let kind = tables.bodies[usize::from(slot)].kind;
-                (0..tables.grounds.len()).any(|ground| tables.is_home_for(ground as u16, kind))
-            }),
-            Condition::GemsTaken(_) => false,
-        })
-    })
+/// Where the walker ends when it steps, by the notes.
+#[derive(PartialEq, Eq)]
+enum Stroll {
+    /// Where it was.
+    Stays,
+    /// On another cell, with nothing else changed.
+    To(u16),
+    /// It changes something that no single step brings back.
+    Parts,
+    /// Gates would have to be judged anew.
+    Unsure,
 }
 
-/// What the survey notes of ground, for the walker, gates left out.
-pub(super) fn ground_notes(tables: &Tables, minds_walker: bool) -> Vec<u8> {
-    let presses = tables
-        .walkers
-        .iter()
-        .any(|&slot| tables.bodies[usize::from(slot)].presses);
-    let mut odd = flag::SLICK | flag::FRAIL | flag::LOCK | flag::WARP;
-    if presses && !tables.plates.is_empty() {
-        odd |= flag::PLATE;
-    }
-    if minds_walker {
-        odd |= flag::EXIT | flag::HOME;
-    }
-    let notes = tables.grounds.iter().map(|ground| {
-        let closed = ground.flags & (flag::CLOSED_TO_WALKER | flag::SINK) != 0;
-        let enter = if closed { 0 } else { ground.enter };
-        enter
-            | if ground.flags & odd != 0 {
-                note::ODD
-            } else {
-                0
-            }
-    });
-    notes.collect()
+/// A spreading roam: the position that it began with, and where it is written.
+struct Spread<'a> {
+    from: &'a [u64],
+    field: Field,
+    out: &'a mut Roam,
+    departures: bool,
 }
 
 impl Rules {
-    /// Notes what a walk needs to know of every cell, for the position in the scratch.
-    pub(super) fn survey(&self, s: &mut Scratch, walker: u16) {
-        let tables = &self.tables;
-        let home = s.at[usize::from(walker)];
-        s.notes.clear();
-        s.notes.extend_from_slice(&self.start_notes);
-        for spot in &tables.mutable {
-            let cell = usize::from(spot.cell);
-            s.notes[cell] = self.ground_notes[usize::from(s.ground[cell])];
+    /// Grows the roam of the position in the scratch, `from`, whose entry is the first member of `out`.
+    pub(super) fn spread(
+        &self,
+        s: &mut Scratch,
+        from: &[u64],
+        walker: u16,
+        out: &mut Roam,
+        departures: bool,
+    ) {
+        let mut view = std::mem::take(&mut s.survey);
+        let odd_pushes = self.tables.has_tow && self.tables.has_warps;
+        self.survey(s, &mut view, walker, departures || odd_pushes);
+        let mut spread = Spread {
+            from,
+            field: self.layout.bodies[usize::from(walker)],
+            out,
+            departures,
+        };
+        let (row, x) = self.terrain.spot[usize::from(spread.out.members[0].cell)];
+        let mut rows = (usize::from(row), usize::from(row));
+        view.front[rows.0] = 1 << x;
+        view.seen[rows.0] = 1 << x;
+        let (mut layer, mut distance) = (0, 0);
+        loop {
+            self.judge_layer(s, &mut view, &mut spread, rows, layer);
+            let Some(reached) = self.next_layer(&mut view, spread.out, rows) else {
+                break;
+            };
+            rows = reached;
+            distance += 1;
+            layer = spread.out.members.len();
+            self.add_layer(&view, spread.out, rows, distance);
         }
-        if !tables.gates.is_empty() {
-            s.occupant[usize::from(home)] = NONE;
-            self.judge_gates(s);
-            s.occupant[usize::from(home)] = walker;
-            for &cell in &tables.gates {
-                if !self.gate_is_open(s, cell) {
-                    s.notes[usize::from(cell)] &= !note::ENTER;
-                }
+        spread.out.keep_open(&view.open, self.tables.size);
+        s.survey = view;
+    }
+
+    /// Judges one by one the steps of this layer that are not plain. `first` is the number of the layer's first member.
+    fn judge_layer(
+        &self,
+        s: &mut Scratch,
+        view: &mut Survey,
+        spread: &mut Spread<'_>,
+        rows: (usize, usize),
+        first: usize,
+    ) {
+        let width = self.tables.size.width();
+        let mut before = first;
+        for row in rows.0..=rows.1 {
+            let front = view.front[row];
+            let mut bits = front & view.judged[row];
+            while bits != 0 {
+                let x = bits.trailing_zeros() as usize;
+                bits &= bits - 1;
+                let rank = (front & ((1 << x) - 1)).count_ones() as usize;
+                let cell = ((row - 1) * width + x) as u16;
+                self.judge_cell(s, view, spread, cell, before + rank);
             }
+            before += front.count_ones() as usize;
         }
-        for (item, &left) in tables.items.iter().zip(&s.item_left) {
-            if left {
-                s.notes[usize::from(item.cell)] |= note::ODD;
-            }
-        }
-        for (body, &cell) in tables.bodies.iter().zip(&s.at) {
-            if cell == NONE || body.walker {
+    }
+
+    fn judge_cell(
+        &self,
+        s: &mut Scratch,
+        view: &mut Survey,
+        spread: &mut Spread<'_>,
+        cell: u16,
+        member: usize,
+    ) {
+        let is_open = |view: &Survey, cell: u16| {
+            self.terrain
+                .spot
+                .get(usize::from(cell))
+                .is_some_and(|&(row, x)| view.open[usize::from(row)] >> x & 1 != 0)
+        };
+        let open_here = is_open(view, cell);
+        for dir in Dir::ALL {
+            let to = self.terrain.next[usize::from(cell)][dir.index()];
+            if open_here && is_open(view, to) {
                 continue;
             }
-            let push = if body.push { note::PUSH } else { 0 };
-            let tow = if body.tow { note::TOW } else { 0 };
-            s.notes[usize::from(cell)] |= note::TAKEN | push | tow;
-        }
-    }
-
-    /// Grows the roam from its entry, breadth first.
-    pub(super) fn spread(&self, s: &mut Scratch, from: &[u64], field: Field, out: &mut Roam) {
-        let notes = std::mem::take(&mut s.notes);
-        let mut at = 0;
-        while at < out.members.len() {
-            let cell = usize::from(out.members[at].cell);
-            let here = notes[cell];
-            for dir in Dir::ALL {
-                let to = self.walk_next[cell][dir.index()];
-                match self.judge(&notes, cell, here, to, dir) {
-                    Walk::Stay => {}
-                    Walk::Link => out.reach_cell(to, at, dir),
-                    Walk::Leave => out.depart(at, dir),
-                    Walk::Try => self.try_walk(s, from, field, out, at, dir),
-                }
+            let mut walk = self.judge(s, view, cell, to, dir);
+            if matches!(walk, Walk::Try) {
+                walk = self.try_walk(s, spread, cell, dir);
             }
-            at += 1;
+            match walk {
+                Walk::Link(to) => view.arrivals.push(Arrival {
+                    cell: to,
+                    from: cell,
+                    dir,
+                }),
+                Walk::Leave if spread.departures => spread.out.departures.push(Departure {
+                    member: member as u16,
+                    step: Step { slot: 0, dir },
+                }),
+                _ => {}
+            }
         }
-        s.notes = notes;
     }
 
-    #[inline]
-    fn judge(&self, notes: &[u8], cell: usize, here: u8, to: u16, dir: Dir) -> Walk {
-        let there = notes[usize::from(to)];
-        let back = dir.opposite();
-        if here & note::ODD != 0 {
+    fn judge(&self, s: &mut Scratch, view: &mut Survey, cell: u16, to: u16, dir: Dir) -> Walk {
+        let (here, there) = (view.notes[usize::from(cell)], view.notes[usize::from(to)]);
+        if here & note::PLATE != 0 && there & note::GATE != 0 {
             return Walk::Try;
         }
         if there & (1 << dir.index()) == 0 {
             return Walk::Stay;
         }
         if there & note::TAKEN != 0 {
-            return self.judge_push(notes, there, to, dir);
+            return self.judge_push(view, there, to, dir);
         }
-        if there & note::ODD != 0 {
+        if here & note::PARTING != 0 {
+            return Walk::Leave;
+        }
+        let behind = self.terrain.next[usize::from(cell)][dir.opposite().index()];
+        if self.tables.has_tow && view.notes[usize::from(behind)] & note::TOW != 0 {
             return Walk::Try;
         }
-        if self.tables.has_tow {
-            let behind = notes[usize::from(self.walk_next[cell][back.index()])];
-            let beyond = notes[usize::from(self.walk_next[usize::from(to)][dir.index()])];
-            if (behind | beyond) & note::TOW != 0 {
-                return Walk::Try;
-            }
+        let end = match self.stroll(view, cell, dir) {
+            Stroll::Stays => return Walk::Stay,
+            Stroll::Parts => return Walk::Leave,
+            Stroll::Unsure => return Walk::Try,
+            Stroll::To(end) => end,
+        };
+        for &cell in &view.passed {
+            s.touched[usize::from(cell)] = true;
         }
-        if here & (1 << back.index()) != 0 {
-            Walk::Link
-        } else if self.tables.has_warps {
-            Walk::Try
-        } else {
-            Walk::Leave
-        }
+        self.judge_end(view, cell, end, dir)
     }
 
-    fn judge_push(&self, notes: &[u8], there: u8, to: u16, dir: Dir) -> Walk {
-        let beyond = self.walk_next[usize::from(to)][dir.index()];
+    fn judge_push(&self, view: &Survey, there: u16, to: u16, dir: Dir) -> Walk {
+        let beyond = self.terrain.next[usize::from(to)][dir.index()];
         let blocked = usize::from(beyond) == self.tables.size.area()
-            || self.tables.strength == 1 && notes[usize::from(beyond)] & note::TAKEN != 0;
+            || self.tables.strength == 1 && view.notes[usize::from(beyond)] & note::TAKEN != 0;
         if there & note::PUSH == 0 || blocked {
             Walk::Stay
-        } else if self.tables.has_warps {
+        } else if self.tables.has_warps && self.tables.has_tow {
             Walk::Try
         } else {
             Walk::Leave
         }
     }
 
-    /// Makes the real step from a member, forth and back, and files it.
-    fn try_walk(
-        &self,
-        s: &mut Scratch,
-        from: &[u64],
-        field: Field,
-        out: &mut Roam,
-        at: usize,
-        dir: Dir,
-    ) {
-        let [mut here, mut there, mut back] = std::mem::take(&mut s.words);
-        self.member_position(from, &out.members[at], &mut here);
-        let step = Step { slot: 0, dir };
-        if let Some(info) = self.step_into(s, &here, step, &mut there) {
-            let linked = !info.finished
-                && same_but(field, &here, &there)
-                && self.leads_back(s, &there, &here, &mut back, dir.opposite());
-            if linked {
-                out.reach_cell(self.cell_in(field, &there), at, dir);
-            } else {
-                out.depart(at, dir);
+    /// Whether the walker, whom a step in `dir` has brought from `cell` to `end`, can come back at once.
+    fn judge_end(&self, view: &mut Survey, cell: u16, end: u16, dir: Dir) -> Walk {
+        let nexts = self.terrain.next[usize::from(end)];
+        let towed = self.tables.has_tow
+            && (self.tables.has_warps
+                || nexts
+                    .iter()
+                    .any(|&near| view.notes[usize::from(near)] & note::TOW != 0));
+        if towed || view.notes[usize::from(end)] & note::GOAL != 0 {
+            return Walk::Try;
+        }
+        let ways = if self.tables.has_warps {
+            &Dir::ALL[..]
+        } else {
+            &[dir.opposite()][..]
+        };
+        let mut unsure = false;
+        for &way in ways {
+            match self.stroll(view, end, way) {
+                Stroll::To(back) if back == cell => return Walk::Link(end),
+                Stroll::Unsure => unsure = true,
+                _ => {}
             }
         }
-        s.words = [here, there, back];
+        if unsure { Walk::Try } else { Walk::Leave }
     }
 
-    /// Whether one step leads from `there` to `here`; `first` is tried first.
-    fn leads_back(
-        &self,
-        s: &mut Scratch,
-        there: &[u64],
-        here: &[u64],
-        back: &mut [u64],
-        first: Dir,
-    ) -> bool {
-        let others = Dir::ALL.into_iter().filter(|&dir| dir != first);
-        std::iter::once(first).chain(others).any(|dir| {
+    /// Follows the walker over the notes. Cargo in the way of the first step counts as parting.
+    fn stroll(&self, view: &mut Survey, from: u16, dir: Dir) -> Stroll {
+        let Survey {
+            notes,
+            stood,
+            passed,
+            ..
+        } = view;
+        stood.clear();
+        passed.clear();
+        let on_plate = notes[usize::from(from)] & note::PLATE != 0;
+        let mut cell = from;
+        loop {
+            let next = self.terrain.next[usize::from(cell)][dir.index()];
+            let there = notes[usize::from(next)];
+            if on_plate && there & note::GATE != 0 {
+                return Stroll::Unsure;
+            }
+            if there & (1 << dir.index()) == 0 {
+                break;
+            }
+            if there & note::TAKEN != 0 {
+                if passed.is_empty() {
+                    return Stroll::Parts;
+                }
+                break;
+            }
+            cell = next;
+            passed.push(cell);
+            let mut under = there;
+            if there & note::WARP != 0 {
+                let twin = self.tables.twin[usize::from(cell)];
+                if notes[usize::from(twin)] & note::TAKEN == 0 {
+                    under = notes[usize::from(twin)] | there & note::PARTING;
+                    cell = twin;
+                    passed.push(cell);
+                }
+            }
+            if under & note::PARTING != 0 {
+                return Stroll::Parts;
+            }
+            if self.tables.has_warps {
+                if stood.contains(&cell) {
+                    break;
+                }
+                stood.push(cell);
+            }
+            if under & note::SLICK == 0 {
+                break;
+            }
+        }
+        if cell == from {
+            Stroll::Stays
+        } else {
+            Stroll::To(cell)
+        }
+    }
+
+    /// Makes the real step from a member, forth and back.
+    fn try_walk(&self, s: &mut Scratch, spread: &Spread<'_>, cell: u16, dir: Dir) -> Walk {
+        let [mut here, mut there, mut back] = std::mem::take(&mut s.words);
+        let field = spread.field;
+        self.member_position(spread.from, &Member { cell, distance: 0 }, &mut here);
+        let walk = match self.step_into(s, &here, Step { slot: 0, dir }, &mut there) {
+            None => Walk::Stay,
+            Some(info)
+                if !info.finished
+                    && same_but(field, &here, &there)
+                    && self.leads_back(s, &there, &here, &mut back) =>
+            {
+                Walk::Link(self.cell_in(field, &there))
+            }
+            Some(_) => Walk::Leave,
+        };
+        s.words = [here, there, back];
+        walk
+    }
+
+    /// Whether one step leads from `there` to `here`.
+    fn leads_back(&self, s: &mut Scratch, there: &[u64], here: &[u64], back: &mut [u64]) -> bool {
+        Dir::ALL.into_iter().any(|dir| {
             self.step_into(s, there, Step { slot: 0, dir }, back)
                 .is_some()
                 && *back == *here
         })
     }
-}
 
-/// What a step from a member is to the roam.
-enum Walk {
-    /// No step.
-    Stay,
-    /// A step of the roam.
-    Link,
-    /// A step that is not.
-    Leave,
-    /// Not told by the survey.
-    Try,
-}
-
-impl Roam {
-    fn reach_cell(&mut self, cell: u16, parent: usize, dir: Dir) {
-        if self.member_at(cell).is_none() {
-            let distance = self.members[parent].distance + 1;
-            let parent = parent as u16;
-            self.add(Member {
-                cell,
-                distance,
-                parent,
-                dir,
-            });
+    /// Spreads over open ground, and to where links lead. Returns the first and last row reached, if any.
+    fn next_layer(
+        &self,
+        view: &mut Survey,
+        out: &mut Roam,
+        rows: (usize, usize),
+    ) -> Option<(usize, usize)> {
+        let mut reached: Option<(usize, usize)> = None;
+        let last = view.open.len() - 2;
+        for row in (rows.0 - 1).max(1)..=(rows.1 + 1).min(last) {
+            let open = |at: usize| view.front[at] & view.open[at];
+            let spread = open(row) << 1 | open(row) >> 1 | open(row - 1) | open(row + 1);
+            let found = spread & view.open[row] & !view.seen[row];
+            view.next[row] = found;
+            view.seen[row] |= found;
+            if found != 0 {
+                reached = Some((reached.map_or(row, |rows| rows.0), row));
+            }
         }
+        view.front[rows.0..=rows.1].fill(0);
+        std::mem::swap(&mut view.front, &mut view.next);
+        for arrival in view.arrivals.drain(..) {
+            let (row, x) = self.terrain.spot[usize::from(arrival.cell)];
+            let (row, bit) = (usize::from(row), 1u64 << x);
+            if view.seen[row] & bit == 0 {
+                view.seen[row] |= bit;
+                view.front[row] |= bit;
+                out.arrivals.push(arrival);
+                let known = reached.unwrap_or((row, row));
+                reached = Some((known.0.min(row), known.1.max(row)));
+            }
+        }
+        reached
     }
 
-    fn depart(&mut self, member: usize, dir: Dir) {
-        let step = Step { slot: 0, dir };
-        let member = member as u16;
-        self.departures.push(Departure { member, step });
+    fn add_layer(&self, view: &Survey, out: &mut Roam, rows: (usize, usize), distance: u16) {
+        let width = self.tables.size.width();
+        for row in rows.0..=rows.1 {
+            let mut bits = view.front[row];
+            while bits != 0 {
+                let cell = ((row - 1) * width + bits.trailing_zeros() as usize) as u16;
+                bits &= bits - 1;
+                out.members.push(Member { cell, distance });
+            }
+        }
     }
 }
 
