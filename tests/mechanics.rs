@@ -143,3 +143,71 @@ fn a_change_of_the_kinds_asks_about_the_level_again() {
     harness.run_steps(3);
     assert!(harness.state().state.revision > before);
 }
+
+fn drag_pack() -> Pack {
+    let start = foldwright::file::STARTS
+        .iter()
+        .find(|start| start.name == "Dragging blocks")
+        .expect("there is one");
+    read_pack(start.text).expect("a good pack").pack
+}
+
+#[test]
+fn under_drag_one_gesture_draws_one_body_which_grows_and_is_cut() {
+    let context = egui::Context::default();
+    let mut desk = Desk::new(&context, drag_pack(), None, Settings::default());
+    let kind = foldwright::level::BodyIx(1);
+    desk.state
+        .execute(Action::ChooseBrush(foldwright::level::Brush::Body(kind)));
+    let stroke = |desk: &mut Desk, cells: &[(u8, u8)], clear: bool| {
+        let cell = |at: usize| foldwright::level::Cell::new(cells[at].0, cells[at].1);
+        desk.state.execute(Action::StrokeStart {
+            cell: cell(0),
+            clear,
+        });
+        (1..cells.len()).for_each(|at| desk.state.execute(Action::StrokeMove(cell(at))));
+        desk.state.execute(Action::StrokeEnd);
+    };
+    let sizes = |desk: &Desk| {
+        let level = desk.state.current();
+        let mut sizes: Vec<usize> = level
+            .bodies_in_order()
+            .iter()
+            .filter(|body| body.kind == kind)
+            .map(|body| body.cells.len())
+            .collect();
+        sizes.sort_unstable();
+        sizes
+    };
+    assert_eq!(sizes(&desk), [2]);
+    stroke(&mut desk, &[(1, 1), (3, 1)], false);
+    assert_eq!(sizes(&desk), [2, 3]);
+    stroke(&mut desk, &[(3, 1), (5, 1)], false);
+    assert_eq!(sizes(&desk), [2, 5], "begun on the block, it grows");
+    stroke(&mut desk, &[(2, 1)], true);
+    assert_eq!(sizes(&desk), [1, 2, 3], "cut in two");
+    for _ in 0..3 {
+        desk.state.execute(Action::Undo);
+    }
+    assert_eq!(sizes(&desk), [2]);
+}
+
+#[test]
+fn a_new_pack_begins_with_the_mechanics_that_were_chosen() {
+    let context = egui::Context::default();
+    for (at, start) in foldwright::file::STARTS.iter().enumerate() {
+        let mut desk = Desk::new(&context, pack(), None, Settings::default());
+        desk.state.execute(Action::CreatePack {
+            name: "mine".to_owned(),
+            start: Some(at),
+        });
+        let expected = read_pack(start.text).expect("a good pack").pack;
+        assert_eq!(
+            desk.state.pack.mechanics, expected.mechanics,
+            "{}",
+            start.name
+        );
+        assert_eq!(desk.state.pack.name, "mine");
+        assert!(desk.state.path.is_none());
+    }
+}

@@ -2,12 +2,9 @@
 
 use super::state::{Brush, State, Tool};
 use crate::level::{
-    Block, BodyIx, Cell, Control, Level, Mechanics, Pack, box_cells, flood_cells, line_cells,
+    Cell, Control, Level, MOST_BLOCK_CELLS, Mechanics, Pack, box_cells, flood_cells, line_cells,
 };
 use std::sync::Arc;
-
-/// The most cells of a block.
-const MOST_BLOCK_CELLS: usize = 16;
 
 /// A gesture under way.
 #[derive(Clone, Debug)]
@@ -22,6 +19,8 @@ pub struct Stroke {
     pub to: Cell,
     /// The pack before the gesture.
     before: Pack,
+    /// Under control Drag, the cells of the one body that a free-hand gesture draws.
+    block: Vec<Cell>,
 }
 
 impl Stroke {
@@ -58,9 +57,10 @@ impl State {
             from: cell,
             to: cell,
             before: self.pack.clone(),
+            block: Vec::new(),
         });
         match tool {
-            Tool::Dot => self.lay([cell]),
+            Tool::Dot => self.dab(vec![cell]),
             Tool::Flood => {
                 let level = Arc::clone(self.current());
                 self.lay(flood_cells(level.size, cell, |other| {
@@ -80,7 +80,41 @@ impl State {
         let passed = line_cells(stroke.to, cell);
         stroke.to = cell;
         if stroke.tool == Tool::Dot {
-            self.lay(passed);
+            self.dab(passed);
+        }
+    }
+
+    /// Free-hand painting. Under control Drag one gesture with a body draws one body; begun on a body of the same kind, it
+    /// makes that one grow.
+    fn dab(&mut self, cells: Vec<Cell>) {
+        let drags = self.mechanics().control == Control::Drag;
+        let (index, mechanics) = (self.level, Arc::clone(self.mechanics()));
+        let Some(stroke) = self.stroke.as_mut() else {
+            return;
+        };
+        let Brush::Body(kind) = stroke.brush else {
+            return self.lay(cells);
+        };
+        if !drags {
+            return self.lay(cells);
+        }
+        let before = &stroke.before.levels[index];
+        if stroke.block.is_empty()
+            && let Some(at) = before.block_at(stroke.from)
+            && before.blocks[at].kind == kind
+        {
+            stroke.block = before.blocks[at].cells.clone();
+        }
+        for cell in side_by_side(&cells) {
+            if !stroke.block.contains(&cell) && stroke.block.len() < MOST_BLOCK_CELLS {
+                stroke.block.push(cell);
+            }
+        }
+        let mut level = Level::clone(before);
+        level.lay_block(&mechanics, kind, &stroke.block);
+        if level != **self.current() {
+            self.pack.levels[self.level] = Arc::new(level);
+            self.level_changed(true);
         }
     }
 
@@ -132,7 +166,7 @@ impl State {
         let mut level = Level::clone(self.current());
         match brush {
             Brush::Body(kind) if is_block(&mechanics, stroke.tool, &cells) => {
-                lay_block(&mut level, &mechanics, kind, cells);
+                level.lay_block(&mechanics, kind, &cells);
             }
             brush => level.paint(&mechanics, brush, cells),
         }
@@ -169,6 +203,21 @@ impl State {
     }
 }
 
+/// The cells with a corner put in wherever two that follow each other touch only at a corner.
+fn side_by_side(cells: &[Cell]) -> Vec<Cell> {
+    let mut linked: Vec<Cell> = Vec::new();
+    for &cell in cells {
+        if let Some(&last) = linked.last()
+            && last.x != cell.x
+            && last.y != cell.y
+        {
+            linked.push(Cell::new(cell.x, last.y));
+        }
+        linked.push(cell);
+    }
+    linked
+}
+
 /// Under control Drag a line or box of a body lays one block, not many single bodies.
 fn is_block(mechanics: &Mechanics, tool: Tool, cells: &[Cell]) -> bool {
     mechanics.control == Control::Drag
@@ -177,15 +226,6 @@ fn is_block(mechanics: &Mechanics, tool: Tool, cells: &[Cell]) -> bool {
         && cells
             .windows(2)
             .all(|pair| tool == Tool::Box || pair[0].x == pair[1].x || pair[0].y == pair[1].y)
-}
-
-fn lay_block(level: &mut Level, mechanics: &Mechanics, kind: BodyIx, cells: Vec<Cell>) {
-    // Painting single bodies first opens closed ground and takes away what was there.
-    level.paint(mechanics, Brush::Body(kind), cells.iter().copied());
-    for &cell in &cells {
-        level.take_body(cell);
-    }
-    level.blocks.push(Block { kind, cells });
 }
 
 fn looks_alike(level: &Level, one: Cell, other: Cell) -> bool {

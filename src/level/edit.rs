@@ -13,7 +13,7 @@ pub enum Brush {
     Body(BodyIx),
     /// This item. Ground that is closed to everything gives way to plain ground.
     Item(ItemIx),
-    /// Takes body and item away; where there are none, makes the ground plain.
+    /// Takes body and item away (of a block only the cell); where there are none, makes the ground plain.
     Clear,
 }
 
@@ -52,7 +52,7 @@ impl Level {
                 self.open(mechanics, at);
             }
             Brush::Clear => {
-                let had_body = self.take_body(cell);
+                let had_body = self.cut_block(cell) || self.take_body(cell);
                 let had_item = self.items[at].take().is_some();
                 if !had_body && !had_item {
                     self.ground[at] = plain_ground(mechanics).unwrap_or(self.ground[at]);

@@ -3,6 +3,7 @@
 //! Everything here is plain data with value semantics. A [`Pack`] shares its [`Mechanics`] and each [`Level`] through
 //! `Arc`, so that an undo snapshot of a pack of a thousand levels costs a thousand pointers.
 
+mod blocks;
 mod edit;
 mod grid;
 mod history;
@@ -13,6 +14,7 @@ mod reshape;
 mod rework;
 mod route;
 
+pub use blocks::MOST_BLOCK_CELLS;
 pub use edit::{Brush, box_cells, flood_cells, line_cells};
 pub use grid::{Cell, Dir, MAX_SIDE, Size};
 pub use history::History;
