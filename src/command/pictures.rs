@@ -87,10 +87,8 @@ fn source(
     };
     // Pictures of ground with one way in face east and are turned; with several ways the shape says more.
     let quarter_turns = match ways {
-        [] | [Dir::E] => Some(0),
-        [Dir::S] => Some(1),
-        [Dir::W] => Some(2),
-        [Dir::N] => Some(3),
+        [] => Some(0),
+        [dir] => Some(shapes::quarter_turns(*dir)),
         _ => None,
     };
     let built_in = |name: &str| drawn(builtin(name)?.to_vec(), quarter_turns?);
