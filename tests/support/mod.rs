@@ -3,4 +3,5 @@
 #![allow(dead_code)]
 
 pub mod brute;
+pub mod case;
 pub mod random;
