@@ -271,3 +271,49 @@ fn a_certificate_about_another_board_does_not_hold() {
     }
     assert!(refused > 0);
 }
+
+/// Runs the program and returns its exit status and what it printed.
+fn run(arguments: &[&std::ffi::OsStr]) -> (Option<i32>, String) {
+    let output = std::process::Command::new(env!("CARGO_BIN_EXE_foldwright"))
+        .args(arguments)
+        .output()
+        .expect("the program runs");
+    let text = String::from_utf8_lossy(&output.stdout).into_owned();
+    (output.status.code(), text)
+}
+
+#[test]
+fn the_command_line_writes_certificates_and_verifies_them() {
+    let folder = tempfile::tempdir().expect("a folder");
+    let proofs = folder.path().join("proofs");
+    let pack = std::path::Path::new(env!("CARGO_MANIFEST_DIR"))
+        .join("sample-levels/unsolvable-on-purpose.pack.ron");
+    let (status, _) = run(&[
+        "check".as_ref(),
+        pack.as_ref(),
+        "--certificate".as_ref(),
+        proofs.as_ref(),
+    ]);
+    assert_eq!(status, Some(1), "its levels can't be finished");
+    let mut written: Vec<_> = std::fs::read_dir(&proofs)
+        .expect("the folder was made")
+        .map(|entry| entry.expect("an entry").path())
+        .collect();
+    written.sort();
+    assert!(written.len() >= 3, "{written:?}");
+    for file in &written {
+        let (status, text) = run(&["verify".as_ref(), file.as_ref()]);
+        assert_eq!(status, Some(0), "{file:?}");
+        assert!(text.contains("can't be finished"), "{text}");
+    }
+    let text = std::fs::read_to_string(&written[0]).expect("a text");
+    let damaged = folder.path().join("damaged.json");
+    std::fs::write(&damaged, text.replacen("closed", "clomed", 1)).expect("written");
+    assert_eq!(run(&["verify".as_ref(), damaged.as_ref()]).0, Some(2));
+    let missing = folder.path().join("missing.json");
+    assert_eq!(run(&["verify".as_ref(), missing.as_ref()]).0, Some(2));
+    let certificate = Certificate::read(&text).expect("it was verified");
+    let empty = Certificate::new(certificate.mechanics(), certificate.level());
+    std::fs::write(&missing, text_of(&empty)).expect("written");
+    assert_eq!(run(&["verify".as_ref(), missing.as_ref()]).0, Some(1));
+}

@@ -19,6 +19,8 @@ Examples:
   foldwright check levels/                    a table of every pack in a folder
   foldwright check levels/ --json --jobs 2    the same for machines
   foldwright check a.pack.ron --level 3 --prove both --map --tiles
+  foldwright check a.pack.ron --certificate proofs/   and why, for levels that can't be finished
+  foldwright verify proofs/a-3.certificate.json       such a proof, checked again by itself
   foldwright export film a.pack.ron --level 3 --out route.gif
 
 RUST_LOG=debug shows the log on standard error.";
@@ -35,6 +37,15 @@ Exit status:
   3  none of these, but a level or its par is undecided within the limits
 
 Numbers go to standard output, progress (on a terminal) and warnings to standard error.";
+
+const VERIFY_AFTER: &str = "\
+The certificate holds the level itself. It is read, its start, every step from every position of its closed set and the reason \
+for every cut are gone through again, and nothing of the search is used for that.
+
+Exit status:
+  0  it proves that its level can't be finished
+  1  it proves nothing
+  2  the file can't be read";
 
 /// A desk for the levels of grid puzzles that proves, after every edit, whether a level can be finished.
 ///
@@ -60,6 +71,12 @@ pub(super) enum Task {
     /// Write pictures, films of routes and tables
     #[command(subcommand)]
     Export(ExportTask),
+    /// Verify a certificate that a level can't be finished, by the plain rules alone
+    #[command(after_help = VERIFY_AFTER)]
+    Verify {
+        /// A file that check --certificate wrote
+        file: PathBuf,
+    },
 }
 
 #[derive(Debug, Subcommand)]
@@ -199,6 +216,9 @@ pub(super) struct CheckArguments {
     /// Tell for every tile as well whether it is needed
     #[arg(long)]
     pub tiles: bool,
+    /// Write a certificate into this folder for every level that can't be finished, for foldwright verify
+    #[arg(long, value_name = "DIR")]
+    pub certificate: Option<PathBuf>,
     #[command(flatten)]
     pub search: SearchArguments,
 }

@@ -3,7 +3,7 @@
 use super::answer::{Answer, Questions, Verdict, answer};
 use super::arguments::CheckArguments;
 use super::gather::{Found, gather, keep_level};
-use super::{print, report, table};
+use super::{certify, print, report, table};
 use crate::level::{Control, Level};
 use crate::worker::in_parallel;
 use std::io::{IsTerminal, Write, stderr};
@@ -43,7 +43,14 @@ pub(super) fn check_found(found: Vec<Found>, arguments: &CheckArguments) -> u8 {
         map: arguments.map,
         tiles: arguments.tiles,
     };
+    let certifying = arguments.certificate.as_deref().map(|folder| {
+        let asked = certify::levels(&found);
+        (folder, asked)
+    });
     let packs = answer_all(found, &questions, arguments.search.jobs, quiet);
+    let written = certifying.is_none_or(|(folder, asked)| {
+        certify::write_all(folder, &asked, &packs, &questions.limits)
+    });
     if !quiet {
         warn_advice(&packs);
     }
@@ -59,7 +66,7 @@ pub(super) fn check_found(found: Vec<Found>, arguments: &CheckArguments) -> u8 {
         table::table(&packs, quiet)
     };
     print(&text);
-    status(&packs)
+    if written { status(&packs) } else { 2 }
 }
 
 pub(super) fn answer_all(

@@ -2,6 +2,7 @@
 
 mod answer;
 mod arguments;
+mod certify;
 mod check;
 mod export;
 mod gather;
@@ -47,6 +48,7 @@ pub fn run(words: impl IntoIterator<Item = OsString>) -> Next {
         Some(Task::Open { file }) => Next::Desk(Some(file)),
         Some(Task::Check(arguments)) => Next::End(ExitCode::from(check::check(&arguments))),
         Some(Task::Export(task)) => Next::End(ExitCode::from(export::export(&task))),
+        Some(Task::Verify { file }) => Next::End(ExitCode::from(certify::verify(&file))),
     }
 }
 
@@ -61,6 +63,7 @@ pub fn without_desk(reason: &str, path: Option<PathBuf>) -> ExitCode {
         level: None,
         map: false,
         tiles: false,
+        certificate: None,
         search: SearchArguments::default(),
     };
     if !arguments.paths.is_empty() {
