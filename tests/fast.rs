@@ -7,7 +7,9 @@ use foldwright::level::{
 };
 use foldwright::rules::Rules;
 use foldwright::study::fast::FastLevel;
-use foldwright::study::{Halt, Limits, MapCounts, Outcome, Prove, Report, UndecidedReason};
+use foldwright::study::{
+    Halt, Limits, MapCounts, Outcome, Prove, Report, UndecidedReason, fold_map, solve_general,
+};
 use foldwright::verify::plain::World;
 use rand::rngs::StdRng;
 use rand::seq::IndexedRandom;
@@ -283,6 +285,40 @@ fn whatever_the_lane_takes_of_mixed_traits_has_the_answers_of_plain_exploration(
     for mix in MIXES {
         let compared = compare(0..300, |seed| random::level(mix, random::TINY, seed));
         println!("{}: {compared:?}", mix.name);
+    }
+}
+
+#[test]
+fn both_lanes_answer_the_same() {
+    for seed in 20_000..20_300 {
+        let (mechanics, level) = random_level(seed, seed % 2 == 0);
+        let Ok(rules) = Rules::compile(&mechanics, &level) else {
+            continue;
+        };
+        let Some(fast) = FastLevel::compile(&rules) else {
+            continue;
+        };
+        let ours = fast.solve(&rules, Prove::Both, &unlimited(), &mut ());
+        let theirs = solve_general(&rules, Prove::Both, &unlimited(), &mut ());
+        assert_eq!(ours.outcome, theirs.outcome, "seed {seed}");
+        assert_eq!(ours.steps, theirs.steps, "seed {seed}");
+        assert_eq!(ours.pushes, theirs.pushes, "seed {seed}");
+        if let Some(closed) = fast.closure(&unlimited()) {
+            let ours = closed.expect("no limit is met").counts;
+            let theirs = fold_map(&rules, &unlimited())
+                .expect("no limit is met")
+                .counts();
+            let chances = (ours.blind_finish_chance, theirs.blind_finish_chance);
+            assert!(
+                (chances.0 - chances.1).abs() < 1e-9,
+                "seed {seed}: {chances:?}"
+            );
+            let ours = MapCounts {
+                blind_finish_chance: chances.1,
+                ..ours
+            };
+            assert_eq!(ours, theirs, "seed {seed}");
+        }
     }
 }
 

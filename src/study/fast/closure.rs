@@ -72,7 +72,9 @@ pub(super) fn close<const N: usize>(
         closure.make_room(most.max(1), meter)?;
         closure.edges.begin.push(closure.edges.target.len() as u32);
         if !closure.finished[node as usize] {
+            let before = closure.store.nodes();
             closure.open(board, node, &mut cargo, meter);
+            meter.owe::<N>(closure.store.nodes() - before);
         }
         node += 1;
     }

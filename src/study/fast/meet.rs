@@ -179,7 +179,9 @@ impl<'b, const N: usize> MeetSearch<'b, N> {
             layers.taken += 1;
             meter.spend(N as u32, || self.bytes())?;
             self.make_room(meter)?;
+            let before = self.store.nodes();
             self.take(node, meter);
+            meter.owe::<N>(self.store.nodes() - before);
             if self.met.is_some() {
                 self.low = self.cost();
                 return Ok(Slice::Finished(0));

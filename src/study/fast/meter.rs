@@ -69,6 +69,13 @@ impl<'a> Meter<'a> {
         self.look(held())
     }
 
+    /// Accounts for roams that were flooded since the last [`Meter::spend`]. Long ways over many words make them dear.
+    #[inline]
+    pub fn owe<const N: usize>(&mut self, roams: usize) {
+        let each = if N >= 16 { 8 * N } else { N };
+        self.left = self.left.saturating_sub((roams * each) as u32);
+    }
+
     #[cold]
     fn look(&mut self, held: u64) -> Result<(), UndecidedReason> {
         self.looked = true;

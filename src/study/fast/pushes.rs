@@ -133,7 +133,9 @@ impl<'b, const N: usize> PushSearch<'b, N> {
             }
             meter.spend(N as u32, || self.bytes())?;
             self.make_room(meter)?;
+            let before = self.store.nodes();
             self.open(node, meter);
+            meter.owe::<N>(self.store.nodes() - before);
             if let Some(best) = self.best
                 && (self.order == Order::AnyRoute || self.nodes[best as usize].pushes <= self.low)
             {

@@ -128,11 +128,13 @@ impl<'b, const N: usize> StepSearch<'b, N> {
             self.low = least;
             meter.spend(N as u32, || self.bytes())?;
             self.make_room(meter)?;
+            let before = self.store.nodes();
             if arriving == Some(least) {
                 self.take_arrival(meter);
             } else {
                 self.take_front(meter);
             }
+            meter.owe::<N>(self.store.nodes() - before);
         }
         Ok(Slice::More)
     }
