@@ -15,6 +15,7 @@
 //! - Under Drag a slide of a single cell asks nothing of `axis`: it goes on in the direction of the step.
 //! - `HomesFilled` and `WalkersOut` hold where there is no home, or no walker.
 
+mod bodies;
 mod facts;
 mod goal;
 mod moving;

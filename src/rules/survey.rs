@@ -64,6 +64,8 @@ pub(super) struct Survey {
     pub seen: Vec<u64>,
     pub front: Vec<u64>,
     pub next: Vec<u64>,
+    /// Number of the member on each cell; of meaning for members alone.
+    pub member_of: Vec<u16>,
     /// Cells reached by links that are no plain walk: cell, where from, by which step.
     pub arrivals: Vec<super::roam::Arrival>,
     /// Cells where the walker has stood in a slide, and all that it came onto.

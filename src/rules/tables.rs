@@ -1,7 +1,8 @@
 //! Mechanics and level joined into tables that a step can look things up in.
 
+use super::bodies::sort_bodies;
 use crate::level::{
-    Axis, BodyIx, BodyKind, Control, Dir, GroundKind, Item, Level, Mechanics, Opens, Role, Size,
+    Axis, BodyIx, Control, Dir, GroundKind, Item, Level, Mechanics, Opens, Role, Size,
 };
 use std::collections::BTreeSet;
 
@@ -137,6 +138,8 @@ pub(crate) struct Tables {
     pub place_of: Vec<u16>,
     pub has_warps: bool,
     pub has_tow: bool,
+    /// Whether some cargo with tow can be pushed as well.
+    pub pushes_to_tow: bool,
     /// Whether every body has one cell.
     pub all_single: bool,
 }
@@ -178,6 +181,7 @@ impl Tables {
             places: Vec::new(),
             place_of: vec![NONE; size.area()],
             has_warps: false,
+            pushes_to_tow: bodies.iter().any(|body| body.tow && body.push),
             has_tow: bodies.iter().any(|body| body.tow),
             all_single: classes.iter().all(|class| class.shape.len() == 1),
             grounds,
@@ -433,66 +437,4 @@ fn item_spots(mechanics: &Mechanics, level: &Level, key_names: &[String]) -> Vec
             }
         })
         .collect()
-}
-
-fn body(kind: &BodyKind, ix: BodyIx, class: u16) -> Body {
-    let walker = kind.role == Role::Walker;
-    Body {
-        kind: ix,
-        walker,
-        push: kind.push && !walker,
-        tow: kind.tow && !walker,
-        glide: kind.glide && !walker,
-        fills: kind.fills && !walker,
-        presses: kind.presses,
-        axis: kind.axis,
-        class,
-    }
-}
-
-type Sorted = (Vec<Class>, Vec<Body>, Vec<u16>, Vec<u16>);
-
-/// Bodies by kind, then shape, then anchor.
-fn sort_bodies(mechanics: &Mechanics, level: &Level) -> Sorted {
-    let size = level.size;
-    let sinks = mechanics.grounds.iter().any(|kind| kind.sink.is_some());
-    let mut all: Vec<(BodyIx, Vec<i32>, u16, u16)> = Vec::new();
-    for (number, block) in level.bodies_in_order().iter().enumerate() {
-        let mut cells: Vec<i32> = block
-            .cells
-            .iter()
-            .map(|&cell| size.index(cell) as i32)
-            .collect();
-        cells.sort_unstable();
-        cells.dedup();
-        let Some(&anchor) = cells.first() else {
-            continue;
-        };
-        let shape = cells.iter().map(|cell| cell - anchor).collect();
-        all.push((block.kind, shape, anchor as u16, number as u16));
-    }
-    all.sort();
-    let (mut classes, mut bodies): (Vec<Class>, Vec<Body>) = (Vec::new(), Vec::new());
-    let (mut start_at, mut numbers) = (Vec::new(), Vec::new());
-    for (kind, shape, anchor, number) in all {
-        let slot = bodies.len();
-        let known = classes
-            .last()
-            .is_some_and(|class| class.kind == kind && class.shape == shape);
-        if !known {
-            let fills = mechanics.body(kind).fills && mechanics.body(kind).role == Role::Cargo;
-            classes.push(Class {
-                kind,
-                can_vanish: fills && sinks && shape.len() == 1,
-                shape,
-                slots: (slot, slot),
-            });
-        }
-        let class = classes.len() - 1;
-        classes[class].slots.1 = slot + 1;
-        bodies.push(body(mechanics.body(kind), kind, class as u16));
-        start_at.push(anchor);
-        numbers.push(number);
-    }
-    (classes, bodies, start_at, numbers)
 }

@@ -7,8 +7,9 @@
 //!
 //! What need not be tried, for one walker:
 //! - Frail ground changes when it is left, a lock when it is entered, an item is gone once taken: no step onto them or from them is undone at once.
-//! - A push changes more than where the walker stands. Only a warp could bring cargo back to where it was, and if
-//!   the walker is to leave that cell free, only towed cargo could come there: pushes are tried on levels with both.
+//! - A push changes more than where the walker stands. The cell in front of the walker loses its cargo, and the walker must come onto it; what moves after that
+//!   is only cargo with tow behind the walker, which takes a warp to be of use. So a push is tried where such cargo is behind, or
+//!   could get there in the same step because it can be pushed too, on levels with warps.
 //! - Without a warp, a slide never comes round a corner: only the opposite step can undo a step.
 
 use super::packing::Field;
@@ -62,6 +63,7 @@ impl Rules {
     ) {
         let mut view = std::mem::take(&mut s.survey);
         let odd_pushes = self.tables.has_tow && self.tables.has_warps;
+        view.member_of.resize(self.tables.size.area(), 0);
         self.survey(s, &mut view, walker, departures || odd_pushes);
         let mut spread = Spread {
             from,
@@ -73,54 +75,41 @@ impl Rules {
         let mut rows = (usize::from(row), usize::from(row));
         view.front[rows.0] = 1 << x;
         view.seen[rows.0] = 1 << x;
-        let (mut layer, mut distance) = (0, 0);
+        view.member_of[usize::from(spread.out.members[0].cell)] = 0;
+        let mut distance = 0;
         loop {
-            self.judge_layer(s, &mut view, &mut spread, rows, layer);
+            self.judge_layer(s, &mut view, &mut spread, rows);
             let Some(reached) = self.next_layer(&mut view, spread.out, rows) else {
                 break;
             };
             rows = reached;
             distance += 1;
-            layer = spread.out.members.len();
-            self.add_layer(&view, spread.out, rows, distance);
+            self.add_layer(&mut view, spread.out, rows, distance);
         }
         spread.out.keep_open(&view.open, self.tables.size);
         s.survey = view;
     }
 
-    /// Judges one by one the steps of this layer that are not plain. `first` is the number of the layer's first member.
+    /// Judges one by one the steps of this layer that are not plain.
     fn judge_layer(
         &self,
         s: &mut Scratch,
         view: &mut Survey,
         spread: &mut Spread<'_>,
         rows: (usize, usize),
-        first: usize,
     ) {
         let width = self.tables.size.width();
-        let mut before = first;
         for row in rows.0..=rows.1 {
-            let front = view.front[row];
-            let mut bits = front & view.judged[row];
+            let mut bits = view.front[row] & view.judged[row];
             while bits != 0 {
-                let x = bits.trailing_zeros() as usize;
+                let cell = ((row - 1) * width + bits.trailing_zeros() as usize) as u16;
                 bits &= bits - 1;
-                let rank = (front & ((1 << x) - 1)).count_ones() as usize;
-                let cell = ((row - 1) * width + x) as u16;
-                self.judge_cell(s, view, spread, cell, before + rank);
+                self.judge_cell(s, view, spread, cell);
             }
-            before += front.count_ones() as usize;
         }
     }
 
-    fn judge_cell(
-        &self,
-        s: &mut Scratch,
-        view: &mut Survey,
-        spread: &mut Spread<'_>,
-        cell: u16,
-        member: usize,
-    ) {
+    fn judge_cell(&self, s: &mut Scratch, view: &mut Survey, spread: &mut Spread<'_>, cell: u16) {
         let is_open = |view: &Survey, cell: u16| {
             self.terrain
                 .spot
@@ -144,7 +133,7 @@ impl Rules {
                     dir,
                 }),
                 Walk::Leave if spread.departures => spread.out.departures.push(Departure {
-                    member: member as u16,
+                    member: view.member_of[usize::from(cell)],
                     step: Step { slot: 0, dir },
                 }),
                 _ => {}
@@ -161,7 +150,7 @@ impl Rules {
             return Walk::Stay;
         }
         if there & note::TAKEN != 0 {
-            return self.judge_push(view, there, to, dir);
+            return self.judge_push(view, cell, to, dir);
         }
         if here & note::PARTING != 0 {
             return Walk::Leave;
@@ -182,13 +171,18 @@ impl Rules {
         self.judge_end(view, cell, end, dir)
     }
 
-    fn judge_push(&self, view: &Survey, there: u16, to: u16, dir: Dir) -> Walk {
+    fn judge_push(&self, view: &Survey, cell: u16, to: u16, dir: Dir) -> Walk {
+        let notes = |cell: u16| view.notes[usize::from(cell)];
         let beyond = self.terrain.next[usize::from(to)][dir.index()];
         let blocked = usize::from(beyond) == self.tables.size.area()
-            || self.tables.strength == 1 && view.notes[usize::from(beyond)] & note::TAKEN != 0;
-        if there & note::PUSH == 0 || blocked {
+            || self.tables.strength == 1 && notes(beyond) & note::TAKEN != 0;
+        let behind = self.terrain.next[usize::from(cell)][dir.opposite().index()];
+        if notes(to) & note::PUSH == 0 || blocked {
             Walk::Stay
-        } else if self.tables.has_warps && self.tables.has_tow {
+        } else if self.tables.has_warps
+            && self.tables.has_tow
+            && (self.tables.pushes_to_tow || notes(behind) & note::TOW != 0)
+        {
             Walk::Try
         } else {
             Walk::Leave
@@ -199,7 +193,7 @@ impl Rules {
     fn judge_end(&self, view: &mut Survey, cell: u16, end: u16, dir: Dir) -> Walk {
         let nexts = self.terrain.next[usize::from(end)];
         let towed = self.tables.has_tow
-            && (self.tables.has_warps
+            && (self.tables.has_warps && self.tables.pushes_to_tow
                 || nexts
                     .iter()
                     .any(|&near| view.notes[usize::from(near)] & note::TOW != 0));
@@ -318,10 +312,16 @@ impl Rules {
     ) -> Option<(usize, usize)> {
         let mut reached: Option<(usize, usize)> = None;
         let last = view.open.len() - 2;
-        for row in (rows.0 - 1).max(1)..=(rows.1 + 1).min(last) {
-            let open = |at: usize| view.front[at] & view.open[at];
-            let spread = open(row) << 1 | open(row) >> 1 | open(row - 1) | open(row + 1);
+        let (first, last) = ((rows.0 - 1).max(1), (rows.1 + 1).min(last));
+        let (mut above, mut here) = (
+            view.front[first - 1] & view.open[first - 1],
+            view.front[first] & view.open[first],
+        );
+        for row in first..=last {
+            let below = view.front[row + 1] & view.open[row + 1];
+            let spread = here << 1 | here >> 1 | above | below;
             let found = spread & view.open[row] & !view.seen[row];
+            (above, here) = (here, below);
             view.next[row] = found;
             view.seen[row] |= found;
             if found != 0 {
@@ -344,13 +344,14 @@ impl Rules {
         reached
     }
 
-    fn add_layer(&self, view: &Survey, out: &mut Roam, rows: (usize, usize), distance: u16) {
+    fn add_layer(&self, view: &mut Survey, out: &mut Roam, rows: (usize, usize), distance: u16) {
         let width = self.tables.size.width();
         for row in rows.0..=rows.1 {
             let mut bits = view.front[row];
             while bits != 0 {
                 let cell = ((row - 1) * width + bits.trailing_zeros() as usize) as u16;
                 bits &= bits - 1;
+                view.member_of[usize::from(cell)] = out.members.len() as u16;
                 out.members.push(Member { cell, distance });
             }
         }
