@@ -195,6 +195,8 @@ impl State {
         match &answer {
             Answer::Studied(report) => match report.route.clone() {
                 Some(route) => self.lay_trail(route, report.spans.clone()),
+                // A route that was replayed on the level as it is now stays, whatever the search gave up on.
+                None if report.outcome != Outcome::Unsolvable && self.has_fresh_route() => {}
                 None => self.playback = None,
             },
             Answer::Invalid(_) => self.playback = None,
@@ -205,6 +207,12 @@ impl State {
             value: answer,
         });
         self.answers.remembered = remembered;
+    }
+
+    fn has_fresh_route(&self) -> bool {
+        self.playback
+            .as_ref()
+            .is_some_and(|playback| self.is_fresh(playback.revision))
     }
 
     fn hear_tile(&mut self, revision: u64, cell: Cell, class: TileClass, left: usize) {

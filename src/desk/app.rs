@@ -198,7 +198,7 @@ impl Desk {
         Panel::right("findings")
             .frame(frame(10, 6))
             .resizable(false)
-            .exact_size(if wide { 290.0 } else { 220.0 })
+            .exact_size(if wide { 290.0 } else { 236.0 })
             .show(ui, |ui| findings::show(ui, state, pictures, actions));
         Panel::bottom("trail")
             .frame(frame(if wide { 16 } else { 8 }, if tall { 8 } else { 4 }))

@@ -17,11 +17,14 @@ pub fn show(ui: &mut Ui, state: &State, actions: &mut Vec<Action>) {
         return;
     };
     let mut dialog = open.clone();
-    let modal = Modal::new(Id::unique("dialog")).show(ui.ctx(), |ui| {
-        let most = ui.ctx().content_rect().width() - 80.0;
-        ui.set_width(width_of(open).min(most));
-        body(ui, state, &mut dialog, actions);
-    });
+    let frame = egui::Frame::popup(ui.style()).inner_margin(egui::Margin::symmetric(18, 16));
+    let modal = Modal::new(Id::unique("dialog"))
+        .frame(frame)
+        .show(ui.ctx(), |ui| {
+            let most = ui.ctx().content_rect().width() - 80.0;
+            ui.set_width(width_of(open).min(most));
+            body(ui, state, &mut dialog, actions);
+        });
     let decided = !actions.is_empty();
     if !decided && modal.should_close() {
         actions.push(if *open == Dialog::Unsaved {

@@ -6,6 +6,9 @@ use super::state::State;
 use super::theme::Theme;
 use egui::{Align, Button, Layout, RichText, Ui};
 
+/// Width of a menu, in points.
+const MENU_WIDTH: f32 = 290.0;
+
 /// Draws the menus and pushes what was chosen.
 pub fn show(ui: &mut Ui, state: &State, actions: &mut Vec<Action>) {
     egui::MenuBar::new().ui(ui, |ui| {
@@ -17,7 +20,7 @@ pub fn show(ui: &mut Ui, state: &State, actions: &mut Vec<Action>) {
 }
 
 fn entries(ui: &mut Ui, state: &State, menu: Menu, actions: &mut Vec<Action>) {
-    ui.set_min_width(240.0);
+    ui.set_width(MENU_WIDTH);
     let mut first = true;
     for command in COMMANDS.iter().filter(|command| command.menu == menu) {
         if command.divided && !first {
@@ -40,7 +43,7 @@ fn entry(ui: &mut Ui, state: &State, command: &Command, actions: &mut Vec<Action
     if let Some(ticked) = command.ticked {
         button = button.selected(ticked(state));
     }
-    let width = egui::vec2(ui.available_width().max(240.0), 0.0);
+    let width = egui::vec2(MENU_WIDTH, 0.0);
     let response = ui.add_enabled((command.can)(state), button.min_size(width));
     if response.clicked() {
         actions.push((command.action)(state));
@@ -50,7 +53,7 @@ fn entry(ui: &mut Ui, state: &State, command: &Command, actions: &mut Vec<Action
 
 fn recent(ui: &mut Ui, state: &State, actions: &mut Vec<Action>) {
     ui.menu_button("Open recent", |ui| {
-        ui.set_min_width(260.0);
+        ui.set_width(MENU_WIDTH);
         if state.settings.recent.is_empty() {
             ui.label(RichText::new("No pack was opened yet.").color(Theme::of(ui).muted));
         }

@@ -32,9 +32,15 @@ pub fn show(ui: &mut Ui, state: &State, pictures: &mut Pictures, actions: &mut V
     }
     ScrollArea::vertical().auto_shrink(false).show(ui, |ui| {
         ui.add_space(4.0);
+        if !roomy {
+            section(ui, "Brush");
+            tools(ui, state, actions);
+            ui.add_space(6.0);
+        }
         kinds(ui, state, pictures, actions);
         if !roomy {
-            tools_and_overlays(ui, state, actions);
+            section(ui, "Show");
+            overlays(ui, state, actions);
         }
     });
 }

@@ -7,6 +7,8 @@ use crate::file::read_pack;
 use crate::level::Pack;
 use egui::{IconData, ViewportBuilder, vec2};
 use std::path::{Path, PathBuf};
+use std::sync::Arc;
+use std::sync::atomic::{AtomicBool, Ordering};
 use thiserror::Error;
 
 /// The pack that is on the desk when none is named.
@@ -15,6 +17,13 @@ const SAMPLE: &str = include_str!("../../sample-levels/night-greenhouse.pack.ron
 /// The program's icon.
 const ICON: &str = include_str!("../../assets/icon.svg");
 
+/// What a window needs of the system.
+#[cfg(target_os = "linux")]
+const LIBRARIES: &str = "it needs a display and the usual libraries (on Debian: apt install libgl1 libegl1 libxkbcommon-x11-0 \
+                         libx11-xcb1 libxcursor1 libxi6 libxrandr2 libwayland-client0)";
+#[cfg(not(target_os = "linux"))]
+const LIBRARIES: &str = "it needs OpenGL 2.1 or later";
+
 /// Why there is no window.
 #[derive(Debug, Error)]
 pub enum DeskError {
@@ -22,7 +31,7 @@ pub enum DeskError {
     #[error("there is no display (neither WAYLAND_DISPLAY nor DISPLAY is set)")]
     NoDisplay,
     /// The display, a system library or OpenGL refused.
-    #[error("the window can't be opened: {0}")]
+    #[error("the window can't be opened: {0}; {LIBRARIES}")]
     NoWindow(String),
     /// The sample pack is damaged: a fault of this program.
     #[error("the sample pack can't be read: {0}")]
@@ -52,21 +61,36 @@ pub fn run(path: Option<PathBuf>) -> Result<(), DeskError> {
         persist_window: true,
         ..eframe::NativeOptions::default()
     };
+    let opened = Arc::new(AtomicBool::new(false));
+    let is_open = Arc::clone(&opened);
     let create = move |creation: &eframe::CreationContext<'_>| {
+        is_open.store(true, Ordering::Relaxed);
         let desk = desk(&creation.egui_ctx, sample, path.as_deref());
         Ok(Box::new(desk) as Box<dyn eframe::App>)
     };
+    hush_until(Arc::clone(&opened));
     // The window libraries are loaded when they are needed; what is missing comes as an error or, in places, as a panic.
-    let opened = std::panic::catch_unwind(std::panic::AssertUnwindSafe(|| {
+    let ended = std::panic::catch_unwind(std::panic::AssertUnwindSafe(|| {
         eframe::run_native("foldwright", options, Box::new(create))
     }));
-    match opened {
+    match ended {
         Ok(Ok(())) => Ok(()),
         Ok(Err(fault)) => Err(DeskError::NoWindow(fault.to_string())),
-        Err(_) => Err(DeskError::NoWindow(
-            "a library that it needs failed".to_owned(),
-        )),
+        Err(fault) if opened.load(Ordering::Relaxed) => std::panic::resume_unwind(fault),
+        Err(_) => Err(DeskError::NoWindow("a library is missing".to_owned())),
     }
+}
+
+/// Panics of the window libraries while they look for a display are told as an error, not as a panic.
+fn hush_until(opened: Arc<AtomicBool>) {
+    let usual = std::panic::take_hook();
+    std::panic::set_hook(Box::new(move |info| {
+        if opened.load(Ordering::Relaxed) {
+            usual(info);
+        } else {
+            log::debug!("{info}");
+        }
+    }));
 }
 
 fn has_display() -> bool {
