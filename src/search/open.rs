@@ -11,6 +11,8 @@ const NO_PAGE: u32 = u32::MAX;
 /// machine. Ids lie in pages of a kilobyte that buckets borrow from a common pool and give back when empty.
 #[derive(Debug, Default)]
 pub struct OpenList {
+    /// Boxed one by one, so that a growing list moves pointers and not pages.
+    #[allow(clippy::vec_box)]
     pages: Vec<Box<[u32; PAGE]>>,
     below: Vec<u32>,
     free: Vec<u32>,

@@ -41,6 +41,9 @@ pub enum AuditError {
     },
 }
 
+/// An edge of the tree: its steps, the first position of the parent, the first position of the child.
+pub type Edge<Step> = (Vec<Step>, Box<[u64]>, Box<[u64]>);
+
 impl<S: StepSpace> TreeSearch<S> {
     /// Checks that visits add up, that every edge replays, that no position stands twice and that no node is lost.
     ///
@@ -68,7 +71,7 @@ impl<S: StepSpace> TreeSearch<S> {
     }
 
     /// The lists of steps on the edges below the root and deeper: (steps, first position of the parent, of the child).
-    pub fn edge_steps(&self) -> Vec<(Vec<S::Step>, Box<[u64]>, Box<[u64]>)> {
+    pub fn edge_steps(&self) -> Vec<Edge<S::Step>> {
         let place = |id: PositionId| self.registry[id.index()].clone();
         let edge = |&id: &NodeId| {
             let node = &self.nodes[id.index()];

@@ -26,7 +26,7 @@ mod audit;
 mod grow;
 mod node;
 
-pub use audit::AuditError;
+pub use audit::{AuditError, Edge};
 
 use indexmap::IndexSet;
 use node::{Node, NodeId, PositionId};
