@@ -640,7 +640,7 @@ fn routes_of_any_length_are_drawn_at_any_width() {
             })
             .chain(std::iter::once(Dir::E))
             .collect();
-        let steps = if steps.len() % 2 == 0 {
+        let steps = if steps.len().is_multiple_of(2) {
             steps
         } else {
             [there, vec![Dir::E]].concat()

@@ -1,6 +1,8 @@
 //! Counts that no one here invented, each with its source. They need nothing but steps and a breadth-first search, and
 //! are counted with the objective off: finished positions are expanded.
 
+#![allow(clippy::unwrap_used)]
+
 use foldwright::level::{
     Axis, Block, BodyIx, BodyKind, Cell, Control, GroundIx, GroundKind, KindId, Legend, Level,
     Mechanics, Role, Size,

@@ -1,5 +1,7 @@
 //! Roams against their definition: every step tried forth and back, on random levels of every trait mix.
 
+#![allow(clippy::unwrap_used)]
+
 mod support;
 
 use foldwright::rules::{Member, Position, Roam, Rules, Scratch, Step};

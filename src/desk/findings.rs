@@ -187,8 +187,12 @@ fn shape_card(ui: &mut Ui, state: &State) {
             figure_line(ui, "commitments on the route", &commitments).on_hover_text(
                 "Steps of the route that lead from one fold to the next, as the search folds them.",
             );
-            let pushes = playback.steps.iter().filter(|step| step.pushed).count();
-            figure_line(ui, "pushes on the route", &grouped(pushes as u64));
+            let pushes = || playback.steps.iter().filter(|step| step.pushed).count();
+            let (caption, count) = match playback.route.moves() {
+                Some(moves) => ("moves on the route", moves),
+                None => ("pushes on the route", pushes()),
+            };
+            figure_line(ui, caption, &grouped(count as u64));
         }
         match &state.answers.map {
             Some(map) => {

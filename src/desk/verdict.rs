@@ -7,6 +7,7 @@
 use super::marks::Mark;
 use super::state::State;
 use super::theme::{counted, grouped};
+use crate::level::Route;
 use crate::study::{Bounds, Figure, Outcome, Progress, Report, Stage, UndecidedReason};
 use crate::worker::Answer;
 
@@ -144,16 +145,17 @@ fn solvable(report: &Report) -> Headline {
     let mut headline = Headline::new(Mark::Solvable, "Can be finished", figure, MEANS_SOLVABLE);
     headline.proved = proved;
     if let Some(pushes) = report.pushes {
-        let note = if pushes.proved {
-            format!(
-                "fewest pushes: {}, proved",
-                grouped(u64::from(pushes.fewest))
-            )
+        let drags = matches!(report.route, Some(Route::Drag(_)));
+        let (one, many) = if drags {
+            ("move", "moves")
         } else {
-            format!(
-                "this route has {}",
-                counted(u64::from(pushes.fewest), "push", "pushes")
-            )
+            ("push", "pushes")
+        };
+        let fewest = u64::from(pushes.fewest);
+        let note = if pushes.proved {
+            format!("fewest {many}: {}, proved", grouped(fewest))
+        } else {
+            format!("a route with {} is known", counted(fewest, one, many))
         };
         headline.notes.push(note);
     }

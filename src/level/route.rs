@@ -38,6 +38,14 @@ impl Route {
         self.len() == 0
     }
 
+    /// Under Drag, the number of moves: runs of consecutive steps of one block. None under Steer.
+    pub fn moves(&self) -> Option<usize> {
+        match self {
+            Route::Steer(_) => None,
+            Route::Drag(steps) => Some(steps.chunk_by(|one, next| one.block == next.block).count()),
+        }
+    }
+
     /// The letters of a Steer route; for a Drag route, `block:letter` with spaces between.
     pub fn text(&self) -> String {
         match self {
