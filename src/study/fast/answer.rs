@@ -154,7 +154,7 @@ impl<const N: usize> Study<'_, N> {
         slice: Result<Slice, UndecidedReason>,
     ) -> Result<bool, Stop> {
         match slice {
-            Ok(Slice::More) => return Ok(false),
+            Ok(Slice::More) => Ok(false),
             Ok(Slice::Finished(node)) => {
                 self.retire_pushes(any);
                 self.take_pushes(any, node);

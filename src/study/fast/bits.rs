@@ -74,23 +74,27 @@ impl<const N: usize> Bits<N> {
     /// Every member moved up by `by` cells, 1 to 64.
     #[inline]
     pub fn up(self, by: u32) -> Bits<N> {
-        let mut moved = [0; N];
-        moved[0] = self.0[0] << (by - 1) << 1;
-        for at in 1..N {
-            moved[at] = self.0[at] << (by - 1) << 1 | self.0[at - 1] >> (64 - by);
-        }
-        Bits(moved)
+        Bits(std::array::from_fn(|at| {
+            let carried = if at == 0 {
+                0
+            } else {
+                self.0[at - 1] >> (64 - by)
+            };
+            self.0[at] << (by - 1) << 1 | carried
+        }))
     }
 
     /// Every member moved down by `by` cells, 1 to 64.
     #[inline]
     pub fn down(self, by: u32) -> Bits<N> {
-        let mut moved = [0; N];
-        for at in 0..N - 1 {
-            moved[at] = self.0[at] >> (by - 1) >> 1 | self.0[at + 1] << (64 - by);
-        }
-        moved[N - 1] = self.0[N - 1] >> (by - 1) >> 1;
-        Bits(moved)
+        Bits(std::array::from_fn(|at| {
+            let carried = if at + 1 == N {
+                0
+            } else {
+                self.0[at + 1] << (64 - by)
+            };
+            self.0[at] >> (by - 1) >> 1 | carried
+        }))
     }
 
     /// The members in rising order.

@@ -23,6 +23,9 @@ const SHUT: Open = Open {
     cargo: false,
 };
 
+/// Picks the numbers of the cells that a condition holds for.
+type Pick<'a> = &'a dyn Fn(&dyn Fn(usize) -> bool) -> Vec<usize>;
+
 /// The level as it stands at the start.
 struct Start<'a> {
     rules: &'a Rules,
@@ -144,9 +147,9 @@ impl Start<'_> {
             }
         }
         let mut open = Vec::with_capacity(area);
-        for at in 0..area {
+        for (at, held) in body.iter().enumerate().take(area) {
             let ground = ground(rules, at);
-            if body[at].is_some() && ground.frail {
+            if held.is_some() && ground.frail {
                 return None;
             }
             open.push(if closed_off(rules, at) {
@@ -251,11 +254,7 @@ impl Start<'_> {
     }
 
     /// Cargo by class; `None` if the objective asks something of walkers that this lane does not know.
-    fn kinds(
-        &self,
-        objective: &Objective,
-        pick: &dyn Fn(&dyn Fn(usize) -> bool) -> Vec<usize>,
-    ) -> Option<Vec<PlanKind>> {
+    fn kinds(&self, objective: &Objective, pick: Pick<'_>) -> Option<Vec<PlanKind>> {
         let accepts = |at: usize, slot: usize| {
             let kind = self.rules.body_traits(slot).kind;
             let here = self.rules.possible_grounds(at as u16).next();

@@ -196,7 +196,7 @@ impl<const N: usize> Distances<N> {
 
 impl<const N: usize> Distances<N> {
     /// Push distances from one cell, with the walker on one side of it, to every cell and side.
-    pub fn from_start(&self, board: &Board<N>, at: usize, side: usize) -> Vec<u16> {
+    pub fn start_distances(&self, board: &Board<N>, at: usize, side: usize) -> Vec<u16> {
         let mut far = vec![NEVER; board.area() * 4];
         far[at * 4 + side] = 0;
         let mut queue = vec![at * 4 + side];

@@ -271,7 +271,7 @@ impl Origins {
         let starts = groups.flat_map(|(group, set)| {
             set.ones().map(move |at| {
                 let side = board.distances.side(at, board.walker);
-                (group, board.distances.from_start(board, at, side))
+                (group, board.distances.start_distances(board, at, side))
             })
         });
         Origins {

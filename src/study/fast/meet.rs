@@ -112,7 +112,7 @@ impl<'b, const N: usize> MeetSearch<'b, N> {
         let mut left = free(&goal);
         while let Some(at) = left.ones().next() {
             let cells = board.flood(left, Bits::one(at));
-            left = left & !cells;
+            left &= !cells;
             search.begin(Side::Back, &goal, cells, cells);
         }
         let start = &board.groups.start;

@@ -135,7 +135,7 @@ fn touched_at_most<const N: usize>(board: &Board<N>) -> bits::Bits<N> {
     let mut most = board.walk;
     for at in Board::all(&board.groups.start).ones() {
         let side = board.distances.side(at, board.walker);
-        let far = board.distances.from_start(board, at, side);
+        let far = board.distances.start_distances(board, at, side);
         let came = |cell: &usize| {
             let sides = &far[cell * 4..cell * 4 + 4];
             sides.iter().any(|&far| far != distance::NEVER)
