@@ -290,15 +290,32 @@ pub fn icon_button(ui: &mut Ui, icon: Icon, enabled: bool, name: &str, hint: &st
 }
 
 /// Slanted lines over a rectangle, `gap` points apart; with `crossed`, in both directions.
+///
+/// The lines are cut to the rectangle here and not by a clip, so that a thousand hatched tiles are still one thing to draw.
 pub fn hatch(painter: &Painter, rect: Rect, gap: f32, stroke: Stroke, crossed: bool) {
-    let clipped = painter.with_clip_rect(rect.intersect(painter.clip_rect()));
-    let (width, height) = (rect.width(), rect.height());
-    let mut from = -height;
-    while from < width {
-        let (left, right) = (rect.left() + from, rect.left() + from + height);
-        clipped.line_segment([pos2(left, rect.bottom()), pos2(right, rect.top())], stroke);
-        if crossed {
-            clipped.line_segment([pos2(left, rect.top()), pos2(right, rect.bottom())], stroke);
+    let mut from = gap / 2.0 - rect.height();
+    while from < rect.width() {
+        // The line rises from `from` at the foot to the right; `low` and `high` are how far up it enters and leaves.
+        let low = (-from).max(0.0);
+        let high = (rect.width() - from).min(rect.height());
+        if high > low {
+            let along = |up: f32| rect.left() + from + up;
+            painter.line_segment(
+                [
+                    pos2(along(low), rect.bottom() - low),
+                    pos2(along(high), rect.bottom() - high),
+                ],
+                stroke,
+            );
+            if crossed {
+                painter.line_segment(
+                    [
+                        pos2(along(low), rect.top() + low),
+                        pos2(along(high), rect.top() + high),
+                    ],
+                    stroke,
+                );
+            }
         }
         from += gap;
     }
