@@ -17,13 +17,6 @@ const SAMPLE: &str = include_str!("../../sample-levels/night-greenhouse.pack.ron
 /// The program's icon.
 const ICON: &str = include_str!("../../assets/icon.svg");
 
-/// What a window needs of the system.
-#[cfg(target_os = "linux")]
-const LIBRARIES: &str = "it needs a display and the usual libraries (on Debian: apt install libgl1 libegl1 libxkbcommon-x11-0 \
-                         libx11-xcb1 libxcursor1 libxi6 libxrandr2 libwayland-client0)";
-#[cfg(not(target_os = "linux"))]
-const LIBRARIES: &str = "it needs OpenGL 2.1 or later";
-
 /// Why there is no window.
 #[derive(Debug, Error)]
 pub enum DeskError {
@@ -31,7 +24,7 @@ pub enum DeskError {
     #[error("there is no display (neither WAYLAND_DISPLAY nor DISPLAY is set)")]
     NoDisplay,
     /// The display, a system library or OpenGL refused.
-    #[error("the window can't be opened: {0}; {LIBRARIES}")]
+    #[error("the window can't be opened: {0}")]
     NoWindow(String),
     /// The sample pack is damaged: a fault of this program.
     #[error("the sample pack can't be read: {0}")]
@@ -75,10 +68,21 @@ pub fn run(path: Option<PathBuf>) -> Result<(), DeskError> {
     }));
     match ended {
         Ok(Ok(())) => Ok(()),
-        Ok(Err(fault)) => Err(DeskError::NoWindow(fault.to_string())),
+        Ok(Err(fault)) => Err(DeskError::NoWindow(reason(&fault.to_string()))),
         Err(fault) if opened.load(Ordering::Relaxed) => std::panic::resume_unwind(fault),
         Err(_) => Err(DeskError::NoWindow("a library is missing".to_owned())),
     }
+}
+
+/// What went wrong, without the place in the source of the window library that some of its errors begin with.
+fn reason(fault: &str) -> String {
+    fault
+        .rsplit(".rs:")
+        .next()
+        .map_or_else(String::new, |rest| {
+            let rest = rest.trim_start_matches(|c: char| c.is_ascii_digit() || c == ':');
+            rest.trim().to_owned()
+        })
 }
 
 /// Panics of the window libraries while they look for a display are told as an error, not as a panic.
@@ -162,5 +166,25 @@ impl eframe::App for Desk {
     /// Positions of scroll areas and the like are not worth keeping; the window's size is kept by eframe.
     fn persist_egui_memory(&self) -> bool {
         false
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn the_reason_has_no_path_of_the_machine_it_was_built_on() {
+        let check = |fault: &str, expected: &str| assert_eq!(reason(fault), expected);
+        check(
+            "winit EventLoopError: os error at /a/b/mod.rs:788: Failed to open connection to X server",
+            "Failed to open connection to X server",
+        );
+        check("no GL context", "no GL context");
+    }
+
+    #[test]
+    fn the_sample_pack_can_be_read() {
+        assert!(!sample_pack().expect("a sound pack").levels.is_empty());
     }
 }
