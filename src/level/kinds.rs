@@ -1,7 +1,7 @@
 //! The mechanics of a pack: kinds of ground, body and item with their traits, and the rules that hold pack-wide.
 //!
 //! Kinds refer to each other by id, as in the file; levels refer to kinds by index into [`Mechanics`], so that renaming
-//! a kind touches no level. The meaning of every trait is in `rules.md` of this project's documentation and in the
+//! a kind touches no level. The meaning of every trait is in `src/rules/rules.md` and in the
 //! step engine ([`crate::rules`]).
 
 use super::grid::Dir;

@@ -1,6 +1,6 @@
 //! One level compiled for speed: what a step does, when a position is finished, which positions a walk folds into one.
 //!
-//! This module owns the exact meaning of a level (`rules.md`). It is compared with a plain interpreter, written a second
+//! This module owns the exact meaning of a level (`rules.md` in this folder, whose Choices are these). It is compared with a plain interpreter, written a second
 //! time from that page, in `tests/agreement.rs`.
 //!
 //! # Choices
