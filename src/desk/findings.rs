@@ -285,7 +285,7 @@ const CLASSES: [(TileClass, &str, &str); 5] = [
     (
         TileClass::CutOff,
         "cut off",
-        "No body can ever come onto it.",
+        "No body can ever come onto it. Only open tiles are counted.",
     ),
     (
         TileClass::Furnished,
@@ -318,7 +318,7 @@ fn tiles_card(ui: &mut Ui, state: &State) {
             stale_note(ui);
         }
         for (class, name, meaning) in CLASSES {
-            class_line(ui, &tiles.value, class, name, meaning);
+            class_line(ui, state, &tiles.value, class, name, meaning);
         }
         if !stale {
             left_line(ui, &tiles.value);
@@ -326,13 +326,16 @@ fn tiles_card(ui: &mut Ui, state: &State) {
     });
 }
 
-fn class_line(ui: &mut Ui, tiles: &Tiles, class: TileClass, name: &str, meaning: &str) {
+fn class_line(
+    ui: &mut Ui,
+    state: &State,
+    tiles: &Tiles,
+    class: TileClass,
+    name: &str,
+    meaning: &str,
+) {
     let theme = Theme::of(ui);
-    let count = tiles
-        .classes
-        .iter()
-        .filter(|known| **known == Some(class))
-        .count();
+    let count = count_of(state, tiles, class);
     quiet_row(ui, |ui| {
         swatch(ui, class);
         ui.label(RichText::new(name).color(theme.muted));
@@ -342,6 +345,22 @@ fn class_line(ui: &mut Ui, tiles: &Tiles, class: TileClass, name: &str, meaning:
     })
     .response
     .on_hover_text(format!("{meaning} Exact for every tile that was asked."));
+}
+
+/// How many tiles are of a class. Tiles that are closed from the start are cut off too, but nobody needs to be told.
+fn count_of(state: &State, tiles: &Tiles, class: TileClass) -> usize {
+    let ground = &state.current().ground;
+    let is_open = |at: usize| {
+        ground
+            .get(at)
+            .is_none_or(|&ground| !state.mechanics().ground(ground).closed_to_all())
+    };
+    tiles
+        .classes
+        .iter()
+        .enumerate()
+        .filter(|&(at, known)| *known == Some(class) && is_open(at))
+        .count()
 }
 
 fn left_line(ui: &mut Ui, tiles: &Tiles) {
