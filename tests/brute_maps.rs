@@ -3,7 +3,9 @@
 
 mod support;
 
-use foldwright::study::{MapCounts, Prove, TileClass, map_counts, solve, tile_classes};
+use foldwright::level::Route;
+use foldwright::study::{MapCounts, Prove, TileClass, fold_spans, map_counts, solve, tile_classes};
+use foldwright::verify::plain::Act;
 use support::brute;
 use support::case::{Case, cases, limits};
 use support::random::{MIXES, TINY, mix};
@@ -37,6 +39,32 @@ impl Asked {
         assert_eq!(found, expected, "{}", self.text());
     }
 
+    /// The spans of a found route against the components of the plain step graph; only for routes that are told by
+    /// directions alone. Returns whether there was one.
+    fn check_spans(&self) -> bool {
+        let known = solve(&self.rules, Prove::Steps, &limits(), &mut ());
+        let Some(Route::Steer(dirs)) = &known.route else {
+            return false;
+        };
+        let (fold, _) = self.space.folds();
+        let (mut at, mut span, mut expected) = (0, 0, Vec::new());
+        for &dir in dirs {
+            let edges = &self.space.edges[at];
+            let edge = edges.iter().find(|edge| edge.act == Act::Walk(dir));
+            let to = edge.expect("a step of the route").to;
+            span += 1;
+            if fold[at] != fold[to] {
+                expected.push(std::mem::take(&mut span));
+            }
+            at = to;
+        }
+        expected.extend(Some(span).filter(|&span| span > 0));
+        let route = Route::Steer(dirs.clone());
+        let found = fold_spans(&self.rules, &route, &limits());
+        assert_eq!(found, Ok(Some(expected)), "{}", self.text());
+        true
+    }
+
     fn check_tiles(&self, most: usize) -> Option<Vec<TileClass>> {
         let expected = brute::tile_classes(&self.mechanics, &self.level, &self.space, most)?;
         let known = solve(&self.rules, Prove::Steps, &limits(), &mut ());
@@ -61,16 +89,18 @@ impl Asked {
 #[track_caller]
 fn check_studies(name: &str) {
     let mut classes = Vec::new();
-    let mut compared = 0;
+    let (mut compared, mut routes) = (0, 0);
     for case in cases(mix(name), TINY, 2_000_000, MAPPED_LEVELS, 800) {
         let case = Asked(case);
         case.check_map();
+        routes += u32::from(case.check_spans());
         if let Some(found) = case.check_tiles(1_500) {
             classes.extend(found);
             compared += 1;
         }
     }
     assert!(compared > MAPPED_LEVELS * 3 / 4, "{name}: {compared}");
+    assert!(routes > 20 || name == "drag", "{name}: {routes} routes");
     for class in [TileClass::CutOff, TileClass::Idle, TileClass::Furnished] {
         assert!(classes.contains(&class), "{name}: no {class:?}");
     }

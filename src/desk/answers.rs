@@ -181,6 +181,12 @@ impl State {
                     value: counts,
                 });
             }
+            Event::Spans { route, spans, .. } => {
+                let playback = self.playback.as_mut();
+                if let Some(playback) = playback.filter(|playback| playback.route == route) {
+                    playback.take_exact(spans);
+                }
+            }
             Event::Shelf(_) | Event::Failed { .. } => {}
         }
     }
@@ -247,6 +253,7 @@ fn revision_of(event: &Event) -> u64 {
         | Event::Answered { revision, .. }
         | Event::Tile { revision, .. }
         | Event::TilesDone { revision, .. }
+        | Event::Spans { revision, .. }
         | Event::Map { revision, .. }
         | Event::Failed { revision, .. } => *revision,
         Event::Shelf(_) => 0,

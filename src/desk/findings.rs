@@ -184,9 +184,12 @@ fn shape_card(ui: &mut Ui, state: &State) {
             .filter(|playback| !playback.spans.is_empty())
         {
             let commitments = grouped(playback.spans.len() as u64 - 1);
-            figure_line(ui, "commitments on the route", &commitments).on_hover_text(
-                "Steps of the route that lead from one fold to the next, as the search folds them.",
-            );
+            let hint = if playback.exact {
+                "Steps of the route that can't be taken back, the last one to the end not counted."
+            } else {
+                "Steps of the route that lead from one fold to the next, as the search folds them."
+            };
+            figure_line(ui, "commitments on the route", &commitments).on_hover_text(hint);
             let pushes = || playback.steps.iter().filter(|step| step.pushed).count();
             let (caption, count) = match playback.route.moves() {
                 Some(moves) => ("moves on the route", moves),

@@ -14,6 +14,8 @@ pub struct Playback {
     pub revision: u64,
     /// Steps of each fold along the route; they add up to its length. Empty while the folds are not known.
     pub spans: Vec<u32>,
+    /// Whether the spans are folds of the whole map; else they are as the search folds, which may see more latches.
+    pub exact: bool,
     /// The start.
     pub start: View,
     /// What each step did; as long as the route.
@@ -44,6 +46,7 @@ impl Playback {
         let whole = spans.iter().sum::<u32>() as usize == route.len();
         let mut playback = Playback {
             spans: if whole { spans } else { Vec::new() },
+            exact: false,
             route,
             revision,
             start: rules.start_view(),
@@ -56,6 +59,14 @@ impl Playback {
         };
         playback.go(0);
         Some(playback)
+    }
+
+    /// Takes the spans that the whole map gives.
+    pub fn take_exact(&mut self, spans: Vec<u32>) {
+        if spans.iter().sum::<u32>() as usize == self.len() {
+            self.spans = spans;
+            self.exact = true;
+        }
     }
 
     /// Number of steps.

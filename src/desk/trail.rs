@@ -263,10 +263,14 @@ fn hover(rect: Rect, layout: &StripLayout, playback: &Playback, response: Respon
             ui.label(text);
             if playback.spans.len() > 1 {
                 let spans = counted(playback.spans.len() as u64, "fold", "folds");
-                ui.weak(format!(
-                    "{spans} along the route, as the search folded it: inside one, every step can be taken back at once. \
-                     A latch is a step that leaves one."
-                ));
+                ui.weak(if playback.exact {
+                    format!("{spans} along the route: inside one, every step can be taken back in the end. A latch can't.")
+                } else {
+                    format!(
+                        "{spans} along the route, as the search folded it: inside one, every step can be taken back at once. \
+                         A latch leaves one; with the whole map known, only those stay that can't be taken back at all."
+                    )
+                });
             }
         });
 }

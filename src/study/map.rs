@@ -6,6 +6,7 @@ use super::space::LevelSpace;
 use super::{Limits, MapCounts, UndecidedReason};
 use crate::rules::{Position, Rules};
 use crate::search::{Closure, Edge, Folded, Full, RoamId, strongly_connected};
+use rustc_hash::FxHashMap;
 
 /// Number of a fold; every commitment leads to a smaller number.
 pub type FoldId = u32;
@@ -100,13 +101,41 @@ pub(super) fn close<'a>(rules: &'a Rules, limits: &Limits) -> Result<Closed<'a>,
     Ok(Closed { graph })
 }
 
+/// The fold of each roam, and the number of folds.
+fn folds_of(closed: &Closed) -> (Vec<FoldId>, u32) {
+    let graph = &closed.graph;
+    strongly_connected(graph.roam_count(), |roam, at| {
+        graph.edges(roam).get(at).map(|edge| edge.to)
+    })
+}
+
+/// The fold of each of some positions of a closed space; none for one that is not in it.
+pub(super) fn folds_of_positions(closed: &Closed, positions: &[Position]) -> Vec<Option<FoldId>> {
+    let (fold_of, _) = folds_of(closed);
+    let graph = &closed.graph;
+    let mut wanted: FxHashMap<Vec<u64>, Vec<(usize, u16)>> = FxHashMap::default();
+    for (at, position) in positions.iter().enumerate() {
+        let mut key = position.0.to_vec();
+        let place = graph.space.rules.split(&mut key);
+        wanted.entry(key).or_default().push((at, place));
+    }
+    let mut found = vec![None; positions.len()];
+    for roam in 0..graph.roam_count() as RoamId {
+        if let Some(alike) = wanted.get(graph.position(roam).0) {
+            let members = graph.members(roam);
+            for &(at, _) in alike.iter().filter(|(_, place)| members.contains(place)) {
+                found[at] = Some(fold_of[roam as usize]);
+            }
+        }
+    }
+    found
+}
+
 /// Folds a closed space.
 pub(super) fn fold(closed: &Closed, halt: &super::Halt) -> Result<FoldMap, UndecidedReason> {
     let graph = &closed.graph;
     let count = graph.roam_count();
-    let (fold_of, folds) = strongly_connected(count, |roam, at| {
-        graph.edges(roam).get(at).map(|edge| edge.to)
-    });
+    let (fold_of, folds) = folds_of(closed);
     let mut map = FoldMap {
         folds: (0..folds).map(|_| EMPTY).collect(),
         passages: Vec::new(),

@@ -13,6 +13,7 @@ mod moves;
 mod report;
 mod solve;
 mod space;
+mod spans;
 mod tiles;
 mod trail;
 mod wander;
@@ -24,6 +25,7 @@ pub use report::{
     UndecidedReason, Watch,
 };
 
+pub use spans::fold_spans;
 pub use wander::{Steps, Wandered, wander};
 
 use crate::rules::Rules;

@@ -86,7 +86,36 @@ fn study(shared: &Shared, job: &StudiesJob) {
         .recall(&job.question, shared.budget());
     map(shared, job, known.as_ref().and_then(|known| known.map));
     if !job.halt.fired() {
+        spans(
+            shared,
+            job,
+            known.as_ref().and_then(|known| known.spans.clone()),
+        );
+    }
+    if !job.halt.fired() {
         tiles(shared, job, known.and_then(|known| known.tiles));
+    }
+}
+
+fn spans(shared: &Shared, job: &StudiesJob, known: Option<Vec<u32>>) {
+    let Some(route) = &job.report.route else {
+        return;
+    };
+    let (question, limits) = (&job.question, limits(shared.budget(), &job.halt));
+    let spans = known.or_else(|| {
+        shared
+            .engine
+            .spans(&question.mechanics, &question.level, route, &limits)
+    });
+    if let Some(spans) = spans.filter(|_| !job.halt.fired()) {
+        let kept = Some(spans.clone());
+        let memory = &mut shared.memory.lock().unwrap_or_else(PoisonError::into_inner);
+        memory.add(question, |known| known.spans = kept);
+        shared.pump.send(Event::Spans {
+            revision: job.revision,
+            route: route.clone(),
+            spans,
+        });
     }
 }
 

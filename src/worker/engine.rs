@@ -30,6 +30,11 @@ pub trait Engine: Send + Sync {
         tell: &mut dyn FnMut(Cell, TileClass),
     ) -> Vec<Option<TileClass>>;
 
+    /// The spans of a route between its commitments, if the whole map fits the limits.
+    fn spans(&self, _: &Mechanics, _: &Level, _: &Route, _: &Limits) -> Option<Vec<u32>> {
+        None
+    }
+
     /// The counts of the fold map, if they fit the limits.
     fn map(&self, mechanics: &Mechanics, level: &Level, limits: &Limits) -> Option<MapCounts>;
 }
@@ -80,6 +85,17 @@ impl Engine for Studies {
         tell: &mut dyn FnMut(Cell, TileClass),
     ) -> Vec<Option<TileClass>> {
         study::tile_classes(mechanics, level, known, limits, tell)
+    }
+
+    fn spans(
+        &self,
+        mechanics: &Mechanics,
+        level: &Level,
+        route: &Route,
+        limits: &Limits,
+    ) -> Option<Vec<u32>> {
+        let rules = Rules::compile(mechanics, level).ok()?;
+        study::fold_spans(&rules, route, limits).ok().flatten()
     }
 
     fn map(&self, mechanics: &Mechanics, level: &Level, limits: &Limits) -> Option<MapCounts> {

@@ -45,6 +45,7 @@ pub(crate) struct Known {
     pub(crate) answer: Answer,
     pub(crate) tiles: Option<Arc<Vec<Option<TileClass>>>>,
     pub(crate) map: Option<MapCounts>,
+    pub(crate) spans: Option<Vec<u32>>,
     budget: Budget,
 }
 
@@ -72,6 +73,7 @@ impl Memory {
             answer: answer.clone(),
             tiles: None,
             map: None,
+            spans: None,
             budget,
         };
         if self.known.insert(question.clone(), known).is_none() {

@@ -132,6 +132,15 @@ pub enum Event {
         /// The class of every cell, row by row, where it is settled.
         classes: Arc<Vec<Option<TileClass>>>,
     },
+    /// The folds along the route of the answer are known from the whole map.
+    Spans {
+        /// Of the request.
+        revision: u64,
+        /// The route.
+        route: Route,
+        /// Steps between commitments; they add up to its length.
+        spans: Vec<u32>,
+    },
     /// The fold map was counted, or did not fit the limits.
     Map {
         /// Of the request.
