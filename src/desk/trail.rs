@@ -14,6 +14,10 @@ use egui::{
     Sense, Stroke, StrokeKind, Ui, WidgetInfo, pos2, vec2,
 };
 
+/// What spans and latches are when the whole map is known, and before.
+const EXACT: &str = "inside one, every step can be taken back in the end; a latch can't.";
+const AS_FOLDED: &str = "as the search folded it: inside one, every step can be taken back at once; a latch leaves one.";
+
 /// Height of the strip of beads, in points.
 const STRIP_HEIGHT: f32 = 26.0;
 /// Room for the start, before the first bead.
@@ -263,14 +267,8 @@ fn hover(rect: Rect, layout: &StripLayout, playback: &Playback, response: Respon
             ui.label(text);
             if playback.spans.len() > 1 {
                 let spans = counted(playback.spans.len() as u64, "fold", "folds");
-                ui.weak(if playback.exact {
-                    format!("{spans} along the route: inside one, every step can be taken back in the end. A latch can't.")
-                } else {
-                    format!(
-                        "{spans} along the route, as the search folded it: inside one, every step can be taken back at once. \
-                         A latch leaves one; with the whole map known, only those stay that can't be taken back at all."
-                    )
-                });
+                let hint = if playback.exact { EXACT } else { AS_FOLDED };
+                ui.weak(format!("{spans} along the route: {hint}"));
             }
         });
 }
