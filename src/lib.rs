@@ -6,8 +6,6 @@
 //! [`worker`] runs studies beside the window; [`export`] turns results into bytes; `desk` is the window and
 //! [`command`] the command line. DEVELOPERS.md says who may import whom; `tests/layering.rs` holds it.
 
-#![cfg_attr(test, allow(clippy::unwrap_used))]
-
 pub mod command;
 #[cfg(feature = "desk")]
 pub mod desk;

@@ -8,7 +8,7 @@ use crate::level::{
 };
 
 fn id(text: &str) -> KindId {
-    KindId::new(text).unwrap()
+    KindId::new(text).expect("as the test set it up")
 }
 
 /// `.` gravel, `X` hedge, `m` moss, `d` drain, `s` slab, `G` gate open when held, `F` gate open when free, `>` turnstile,
@@ -123,12 +123,12 @@ fn mechanics(control: Control, strength: u8) -> Mechanics {
 /// A level of three layers of rows, `/` between rows; `-` is nothing.
 fn level(ground: &str, body: &str, item: &str) -> Level {
     let rows: Vec<&str> = ground.split('/').collect();
-    let size = Size::new(rows[0].len(), rows.len()).unwrap();
+    let size = Size::new(rows[0].len(), rows.len()).expect("as the test set it up");
     let mut level = Level::filled("", size, GroundIx(0));
     let (grounds, bodies, items) = (grounds(), bodies(), items());
     let letters = |text: &str| -> Vec<char> { text.chars().filter(|&c| c != '/').collect() };
     for (at, letter) in letters(ground).into_iter().enumerate() {
-        level.ground[at] = GroundIx(letter_at(&grounds, letter).unwrap());
+        level.ground[at] = GroundIx(letter_at(&grounds, letter).expect("as the test set it up"));
     }
     for (at, letter) in letters(body).into_iter().enumerate() {
         level.bodies[at] = letter_at(&bodies, letter).map(BodyIx);
@@ -159,7 +159,7 @@ impl Case {
         let mechanics = mechanics(Control::Steer, strength);
         let level = level(ground, body, item);
         Case {
-            rules: Rules::compile_open(&mechanics, &level).unwrap(),
+            rules: Rules::compile_open(&mechanics, &level).expect("as the test set it up"),
             width: level.size.width(),
         }
     }
@@ -336,7 +336,7 @@ fn a_slide_ends_where_it_comes_round_to_a_cell_it_has_stood_on() {
 fn drag(steps: &[(u16, char)]) -> Route {
     let steps = steps.iter().map(|&(block, letter)| DragStep {
         block,
-        dir: Dir::from_letter(letter).unwrap(),
+        dir: Dir::from_letter(letter).expect("as the test set it up"),
     });
     Route::Drag(steps.collect())
 }
@@ -355,7 +355,7 @@ fn drag_rules(ground: &str, body: &str, blocks: &[&[(u8, u8)]], axis: Axis) -> R
             cells: cells.iter().map(|&(x, y)| Cell::new(x, y)).collect(),
         })
         .collect();
-    Rules::compile_open(&mechanics, &level).unwrap()
+    Rules::compile_open(&mechanics, &level).expect("as the test set it up")
 }
 
 fn cells_after(rules: &Rules, steps: &[(u16, char)], number: u16) -> Option<Vec<Cell>> {
@@ -365,7 +365,7 @@ fn cells_after(rules: &Rules, steps: &[(u16, char)], number: u16) -> Option<Vec<
         steps.len(),
         "every step of {steps:?} changes something"
     );
-    let view = played.last().unwrap().view.clone();
+    let view = played.last().expect("as the test set it up").view.clone();
     let found = view.bodies.into_iter().find(|body| body.number == number);
     found.map(|body| body.cells)
 }
@@ -373,7 +373,7 @@ fn cells_after(rules: &Rules, steps: &[(u16, char)], number: u16) -> Option<Vec<
 #[test]
 fn a_block_moves_as_one_along_its_axis() {
     let rules = drag_rules(".../...", "---/---", &[&[(0, 0), (1, 0)]], Axis::Row);
-    let moved = cells_after(&rules, &[(0, 'e')], 0).unwrap();
+    let moved = cells_after(&rules, &[(0, 'e')], 0).expect("as the test set it up");
     assert_eq!(moved, [Cell::new(1, 0), Cell::new(2, 0)]);
     assert!(rules.play(&drag(&[(0, 's')])).is_empty());
     assert!(rules.play(&drag(&[(0, 'w')])).is_empty());
@@ -383,8 +383,14 @@ fn a_block_moves_as_one_along_its_axis() {
 fn a_block_keeps_its_number_when_interchangeable_ones_pass_it() {
     let rules = drag_rules("..../....", "p---/--p-", &[], Axis::Any);
     let steps = [(0, 'e'), (0, 'e'), (0, 'e'), (1, 'n'), (0, 's')];
-    assert_eq!(cells_after(&rules, &steps, 0).unwrap(), [Cell::new(3, 1)]);
-    assert_eq!(cells_after(&rules, &steps, 1).unwrap(), [Cell::new(2, 0)]);
+    assert_eq!(
+        cells_after(&rules, &steps, 0).expect("as the test set it up"),
+        [Cell::new(3, 1)]
+    );
+    assert_eq!(
+        cells_after(&rules, &steps, 1).expect("as the test set it up"),
+        [Cell::new(2, 0)]
+    );
 }
 
 #[test]
@@ -400,7 +406,7 @@ fn steps_by_slot_become_a_route_by_number() {
                 .step(&at, step)
                 .is_some_and(|(to, _)| to == played.position)
         });
-        steps.push(step.unwrap());
+        steps.push(step.expect("as the test set it up"));
         at = played.position;
     }
     assert_eq!(rules.route(&steps), route);
@@ -415,7 +421,7 @@ fn a_block_of_two_cells_keeps_off_moss_and_a_single_one_slides() {
     );
     let single = drag_rules(".mm.", "p---", &[], Axis::Any);
     assert_eq!(
-        cells_after(&single, &[(0, 'e')], 0).unwrap(),
+        cells_after(&single, &[(0, 'e')], 0).expect("as the test set it up"),
         [Cell::new(3, 0)]
     );
 }
@@ -425,7 +431,7 @@ fn a_block_in_a_shut_gate_can_move_only_out_of_it() {
     let rules = drag_rules(".G..", "----", &[&[(1, 0), (2, 0)]], Axis::Any);
     assert!(rules.play(&drag(&[(0, 'w')])).is_empty());
     assert_eq!(
-        cells_after(&rules, &[(0, 'e')], 0).unwrap(),
+        cells_after(&rules, &[(0, 'e')], 0).expect("as the test set it up"),
         [Cell::new(2, 0), Cell::new(3, 0)]
     );
 }

@@ -4,4 +4,5 @@
 
 pub mod brute;
 pub mod case;
+mod placing;
 pub mod random;
