@@ -61,6 +61,15 @@ impl Playback {
         Some(playback)
     }
 
+    /// What spans and latches of this trail are.
+    pub fn spans_hint(&self) -> &'static str {
+        if self.exact {
+            "inside one, every step can be taken back in the end; a latch can't."
+        } else {
+            "as the search folded it: inside one, every step can be taken back at once; a latch leaves one."
+        }
+    }
+
     /// Takes the spans that the whole map gives.
     pub fn take_exact(&mut self, spans: Vec<u32>) {
         if spans.iter().sum::<u32>() as usize == self.len() {

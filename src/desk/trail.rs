@@ -14,10 +14,6 @@ use egui::{
     Sense, Stroke, StrokeKind, Ui, WidgetInfo, pos2, vec2,
 };
 
-/// What spans and latches are when the whole map is known, and before.
-const EXACT: &str = "inside one, every step can be taken back in the end; a latch can't.";
-const AS_FOLDED: &str = "as the search folded it: inside one, every step can be taken back at once; a latch leaves one.";
-
 /// Height of the strip of beads, in points.
 const STRIP_HEIGHT: f32 = 26.0;
 /// Room for the start, before the first bead.
@@ -267,7 +263,7 @@ fn hover(rect: Rect, layout: &StripLayout, playback: &Playback, response: Respon
             ui.label(text);
             if playback.spans.len() > 1 {
                 let spans = counted(playback.spans.len() as u64, "fold", "folds");
-                let hint = if playback.exact { EXACT } else { AS_FOLDED };
+                let hint = playback.spans_hint();
                 ui.weak(format!("{spans} along the route: {hint}"));
             }
         });
