@@ -1,7 +1,7 @@
 //! How soon a running search ends when a newer wish comes: `cargo bench --bench cancel`. Wanted: within 5 ms.
 //!
-//! A board of 64 x 64 with 30 cargo is searched by the real worker; at moments spread over the search it is told to stop, and
-//! the time until its answer arrives is taken.
+//! Boards of 64 x 64 and 40 x 40 with 30 cargo are searched by the real worker; at moments spread over the search it is told
+//! to stop, and the time until its answer arrives is taken.
 
 use foldwright::level::{
     BodyIx, BodyKind, Cell, Clause, Control, GroundIx, GroundKind, KindId, Legend, Level,
@@ -39,27 +39,34 @@ fn mechanics() -> Mechanics {
 
 /// A hall with pillars, 30 cargo at one end and 30 homes at the other; each round moves a pillar, so that nothing is
 /// remembered.
-fn level(round: u64) -> Level {
-    let size = Size::new(64, 64).expect("a good size");
+fn level(side: u8, round: u64) -> Level {
+    let size = Size::new(usize::from(side), usize::from(side)).expect("a good size");
     let mut level = Level::filled("hall", size, GroundIx(0));
     for cell in size.cells() {
-        let border = cell.x == 0 || cell.y == 0 || cell.x == 63 || cell.y == 63;
+        let border = cell.x == 0 || cell.y == 0 || cell.x + 1 == side || cell.y + 1 == side;
         if border || (cell.x % 9 == 4 && cell.y % 7 == 3) {
             level.ground[size.index(cell)] = GroundIx(1);
         }
     }
-    let moved = Cell::new(20 + (round % 20) as u8, 30 + (round / 20) as u8);
+    let moved = Cell::new(2 + (round % 20) as u8, 2 + (round / 20) as u8);
     level.ground[size.index(moved)] = GroundIx(1);
     for at in 0..30_u8 {
         let (column, row) = (at % 6 * 3, at / 6 * 3);
         level.bodies[size.index(Cell::new(6 + column, 8 + row))] = Some(BodyIx(1));
-        level.ground[size.index(Cell::new(40 + column, 45 + row))] = GroundIx(2);
+        level.ground[size.index(Cell::new(side - 22 + column, side - 18 + row))] = GroundIx(2);
     }
-    level.bodies[size.index(Cell::new(2, 2))] = Some(BodyIx(0));
+    level.bodies[size.index(Cell::new(1, 1))] = Some(BodyIx(0));
     level
 }
 
 fn main() {
+    for side in [64, 40] {
+        println!("{side} x {side}, 30 cargo");
+        time(side);
+    }
+}
+
+fn time(side: u8) {
     let mechanics = Arc::new(mechanics());
     let mut worker = Worker::start(|| {});
     let mut waits = Vec::new();
@@ -69,7 +76,7 @@ fn main() {
         worker.ask(Request::Study {
             revision: round + 1,
             mechanics: Arc::clone(&mechanics),
-            level: Arc::new(level(round)),
+            level: Arc::new(level(side, round)),
             prove: Prove::Steps,
             last_route: None,
             studies: false,

@@ -30,12 +30,17 @@ pub use wander::{Steps, Wandered, wander};
 
 use crate::rules::Rules;
 
+/// Cells of the largest board that the fast lane answers. On larger ones its tables take longer to make, and a piece of its
+/// search longer to end, than a newer edit may wait.
+const LARGEST_FAST_BOARD: usize = 400;
+
 /// Answers whether a level can be finished and at what least cost.
 ///
 /// The route of the answer was replayed by the step engine. "Unsolvable" means that the space, cut only by safe rules, was
 /// closed. The same limits in positions give the same answer, to the node, on every run.
 pub fn solve(rules: &Rules, prove: Prove, limits: &Limits, watch: &mut dyn Watch) -> Report {
-    match fast::FastLevel::compile(rules) {
+    let small = rules.size().area() <= LARGEST_FAST_BOARD;
+    match small.then(|| fast::FastLevel::compile(rules)).flatten() {
         Some(fast) => fast.solve(rules, prove, limits, watch),
         None => solve_general(rules, prove, limits, watch),
     }
